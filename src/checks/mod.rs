@@ -1,1 +1,21 @@
-//! (in preparation)
+//! The five questions: each takes a truss and gives an answer and findings, with evidence.
+//!
+//! ```text
+//! Truss -> close (places the joints) -> Placed -> lines, clear, stands, cut -> Report
+//! ```
+//!
+//! # Invariants
+//!
+//! Checks know nothing of files or screens. Each is a function of the truss and the limits only: no state, no clock, no
+//! randomness; the same truss gives the same report everywhere.
+
+mod answers;
+mod findings;
+mod placed;
+
+pub use answers::{
+    Answers, ClearAnswer, ClearState, CloseAnswer, CloseState, CutAnswer, JointRow, MemberRow, Motion, NeighbourSpread,
+    Proof, Reading, Report, Slip, StandsAnswer, StandsState, Suspect, TrueAnswer, TrueState,
+};
+pub use findings::{Evidence, Finding, Law, Level, Mend, Question, Rule};
+pub use placed::{Placed, Places};

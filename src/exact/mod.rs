@@ -1,1 +1,27 @@
-//! (in preparation)
+//! Numbers and the laws of rational trigonometry: everything here is exact.
+//!
+//! With rational coordinates every quadrance (squared distance) and every spread (squared sine of the angle between two
+//! lines) is rational, so "straight", "square", "parallel" and "equal" are decided without a tolerance.
+//!
+//! # Invariants
+//!
+//! This room knows nothing of trusses, units or trade notation, and holds no floating-point number.
+
+mod interval;
+mod laws;
+mod point;
+mod predicates;
+mod rational;
+mod surd;
+
+pub use interval::Interval;
+pub use laws::{
+    archimedes, cross, cross_law_residual, pythagoras_residual, quadrance, spread, spread_between, spread_polynomial,
+    triple_quad_residual, triple_spread_residual,
+};
+pub use point::{Point, Vector};
+pub use predicates::{
+    Orientation, compare_directions, in_line, is_between, is_parallel, is_square, on_segment, orientation,
+};
+pub use rational::{Rational, fraction, nearest_multiple, parse_fraction, ratio, whole};
+pub use surd::{Rounded, Surd, ceil_sqrt, floor_sqrt};
