@@ -5,9 +5,10 @@ use crate::truss::{Edit, FigureId, JointId, MemberId};
 use serde::{Deserialize, Serialize};
 
 /// The five questions a checker asks.
-#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash, Serialize, Deserialize)]
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq, PartialOrd, Ord, Hash, Serialize, Deserialize)]
 pub enum Question {
     /// Do the figures close?
+    #[default]
     Close,
     /// Is every line true?
     True,

@@ -1,0 +1,140 @@
+//! The five answers, always in sight.
+
+use crate::checks::{ClearState, CloseState, Level, Question, Report, StandsState, TrueState};
+use crate::measure::pretty;
+use crate::page::state::State;
+
+/// How an answer or a finding is signed, beside its words.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Sign {
+    /// In order.
+    Good,
+    /// A fault.
+    Fault,
+    /// A caution.
+    Caution,
+    /// A note, or nothing to say.
+    Note,
+    /// Being worked out.
+    Waiting,
+}
+
+impl Sign {
+    /// The name used for its style.
+    pub fn class(self) -> &'static str {
+        match self {
+            Sign::Good => "sign good",
+            Sign::Fault => "sign fault",
+            Sign::Caution => "sign caution",
+            Sign::Note => "sign note",
+            Sign::Waiting => "sign waiting",
+        }
+    }
+
+    /// What it means, for those who cannot see it.
+    pub fn words(self) -> &'static str {
+        match self {
+            Sign::Good => "in order",
+            Sign::Fault => "fault",
+            Sign::Caution => "caution",
+            Sign::Note => "note",
+            Sign::Waiting => "being worked out",
+        }
+    }
+
+    pub(super) fn of_level(level: Level) -> Sign {
+        match level {
+            Level::Fault => Sign::Fault,
+            Level::Caution => Sign::Caution,
+            Level::Note => Sign::Note,
+        }
+    }
+}
+
+/// One question and its answer.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct AnswerTile {
+    /// The question.
+    pub question: Question,
+    /// The answer in a word or two.
+    pub answer: String,
+    /// One line more.
+    pub detail: String,
+    /// How it is signed.
+    pub sign: Sign,
+    /// Whether its evidence is shown.
+    pub chosen: bool,
+    /// Whether the answer is about an older state of the truss.
+    pub stale: bool,
+}
+
+/// The five answers, from the state.
+pub fn answer_tiles(state: &State) -> Vec<AnswerTile> {
+    Question::ALL.into_iter().map(|question| tile(state, question)).collect()
+}
+
+fn tile(state: &State, question: Question) -> AnswerTile {
+    let chosen = state.question == question;
+    let stale = state.fresh().is_none();
+    match state.checked.as_ref().filter(|_| !state.is_first_screen()) {
+        None => AnswerTile {
+            question,
+            answer: if state.is_first_screen() { "–".into() } else { "…".into() },
+            detail: String::new(),
+            sign: if state.is_first_screen() { Sign::Note } else { Sign::Waiting },
+            chosen,
+            stale: false,
+        },
+        Some(checked) => {
+            let (answer, detail, sign) = words(&checked.report, question);
+            AnswerTile { question, answer: pretty(&answer), detail: pretty(&detail), sign, chosen, stale }
+        }
+    }
+}
+
+fn words(report: &Report, question: Question) -> (String, String, Sign) {
+    let answers = &report.answers;
+    let has = |level: Level| report.findings.iter().any(|f| f.rule.question() == question && f.level == level);
+    let worst = |good: Sign| match () {
+        () if has(Level::Fault) => Sign::Fault,
+        () if has(Level::Caution) => Sign::Caution,
+        () => good,
+    };
+    match question {
+        Question::Close => {
+            let (answer, sign) = match answers.close.state {
+                CloseState::Closes => ("They close", worst(Sign::Good)),
+                CloseState::DoesNotClose => ("They do not", Sign::Fault),
+                CloseState::NotSettled => ("Not settled", Sign::Caution),
+                CloseState::TooFewFigures => ("Too few figures", worst(Sign::Caution)),
+                CloseState::NoFigures => ("No figures", worst(Sign::Note)),
+            };
+            (answer.into(), answers.close.summary.clone(), sign)
+        }
+        Question::True => {
+            let (answer, sign) = match answers.lines.state {
+                TrueState::True => ("True", worst(Sign::Good)),
+                TrueState::Almost => ("Almost", worst(Sign::Caution)),
+                TrueState::NotTrue => ("Not true", Sign::Fault),
+            };
+            (answer.into(), answers.lines.summary.clone(), sign)
+        }
+        Question::Clear => {
+            let answer = match answers.clear.state {
+                ClearState::Clear => "Clear",
+                ClearState::NotClear => "Not clear",
+            };
+            (answer.into(), answers.clear.summary.clone(), worst(Sign::Good))
+        }
+        Question::Stands => {
+            let (answer, sign) = match answers.stands.state {
+                StandsState::Rigid => ("Rigid", worst(Sign::Good)),
+                StandsState::Mechanism => ("It moves", Sign::Fault),
+                StandsState::CriticalForm => ("Critical form", Sign::Fault),
+                StandsState::NoSupports => ("No supports", worst(Sign::Note)),
+            };
+            (answer.into(), answers.stands.summary.clone(), sign)
+        }
+        Question::Cut => (answers.cut.state.clone(), answers.cut.summary.clone(), worst(Sign::Note)),
+    }
+}

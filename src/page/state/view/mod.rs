@@ -1,0 +1,118 @@
+//! View models: what is to be shown, ready to be placed. No component computes anything.
+
+mod answers;
+mod board;
+mod book;
+mod dimensions;
+mod evidence;
+mod labels;
+mod overlay;
+mod path;
+mod sheet;
+
+pub use answers::{AnswerTile, Sign, answer_tiles};
+pub use board::{DrawingView, Turned, drawing_view};
+pub use book::{BookView, CellKind, CellView, PAGE_ROWS, RowView, book_view, column_titles};
+pub use evidence::{EvidenceLine, EvidenceView, FindingView, MendView, SuspectView, evidence_view};
+pub use labels::{Anchor, LabelView};
+pub use overlay::{OverlayView, overlay_view};
+pub use path::PathView;
+pub use sheet::{SheetTable, SheetView, sheet_view};
+
+use super::model::{Source, State};
+use crate::measure::{Sheet, Unit, pretty};
+use crate::truss::Selection;
+
+/// The head of the page.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct HeadView {
+    /// The title of the sheet.
+    pub title: String,
+    /// The unit and the step, in words.
+    pub sheet: String,
+    /// Where it came from and what it is now.
+    pub source: String,
+    /// The change that can be undone.
+    pub undo: Option<String>,
+    /// The change that can be made again.
+    pub redo: Option<String>,
+    /// The fingerprint, when the answers are there.
+    pub fingerprint: String,
+}
+
+/// The head of the page, from the state.
+pub fn head_view(state: &State) -> HeadView {
+    let truss = &state.truss;
+    let unit = match truss.unit {
+        Unit::In => "inches",
+        Unit::Ft => "feet",
+        Unit::Mm => "millimetres",
+        Unit::Cm => "centimetres",
+        Unit::M => "metres",
+    };
+    let source = match &state.source {
+        None => String::new(),
+        Some(Source::Own) => "drawn here".into(),
+        Some(Source::Demo(_)) => "a demonstration".into(),
+        Some(Source::File(name)) => name.clone(),
+        Some(Source::Link) => "from a link, checked here".into(),
+        Some(Source::Kept) => "kept by this browser".into(),
+    };
+    let step = Sheet::of(truss.unit, &truss.step.value).exact_words(&truss.step.value);
+    HeadView {
+        title: if truss.title.is_empty() { "Untitled truss".into() } else { truss.title.clone() },
+        sheet: format!("{unit}, printed to {}", pretty(&step)),
+        source,
+        undo: state.history.undo_label().map(pretty),
+        redo: state.history.redo_label().map(pretty),
+        fingerprint: state.fresh().map(|checked| checked.fingerprint.clone()).unwrap_or_default(),
+    }
+}
+
+/// What can be done with what is selected.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct SelectionView {
+    /// What is selected, in words.
+    pub words: String,
+    /// True when joints are selected.
+    pub joints: bool,
+    /// True when members are selected.
+    pub members: bool,
+    /// True when two joints are selected that no member joins.
+    pub can_join: bool,
+    /// What typing would make: `length of T1`.
+    pub offer: String,
+}
+
+/// What can be done with what is selected; `None` when nothing is.
+pub fn selection_view(state: &State) -> Option<SelectionView> {
+    let (truss, selection) = (&state.truss, &state.selection);
+    if selection.is_empty() {
+        return None;
+    }
+    let pair = match selection.joints[..] {
+        [a, b] => Some((a, b)),
+        _ => None,
+    };
+    let joined = |a, b| truss.members.iter().any(|m| m.ends() == [a, b] || m.ends() == [b, a]);
+    Some(SelectionView {
+        words: super::draw::name_selection(truss, selection),
+        joints: !selection.joints.is_empty(),
+        members: !selection.members.is_empty(),
+        can_join: pair.is_some_and(|(a, b)| !joined(a, b)),
+        offer: offer(state, selection),
+    })
+}
+
+fn offer(state: &State, selection: &Selection) -> String {
+    let truss = &state.truss;
+    match (&selection.joints[..], &selection.members[..]) {
+        ([a, b], []) => {
+            let kind = super::entry::likely_kind(truss, *a, *b);
+            format!("type the {kind} from {} to {}", truss.mark(*a), truss.mark(*b))
+        }
+        ([], [member]) => format!("type the length of {}", truss.member(*member).mark),
+        ([_, at, _], []) => format!("type an angle at {}, such as angle 26.6", truss.mark(*at)),
+        _ => String::new(),
+    }
+}
