@@ -152,7 +152,9 @@ fn styles(directory: &Path) -> Outcome<String> {
 /// Refuses text that would end the element it is put into.
 fn harmless(text: &str, endings: &[&str]) -> Outcome<()> {
     match endings.iter().find(|ending| text.contains(**ending)) {
-        Some(ending) => Err(Failure::new(format!("a part of the page holds `{ending}` and cannot be put into one file"))),
+        Some(ending) => {
+            Err(Failure::new(format!("a part of the page holds `{ending}` and cannot be put into one file")))
+        }
         None => Ok(()),
     }
 }

@@ -7,8 +7,8 @@ use base64::Engine as _;
 use base64::engine::general_purpose::STANDARD as BASE64;
 use serde_json::{Value, json};
 
-use super::machine::{self, During, Failure, Outcome};
 use super::bundle;
+use super::machine::{self, During, Failure, Outcome};
 use crate::webdriver::Driver;
 
 const HELP: &str = "\

@@ -3,9 +3,9 @@
 use std::env;
 use std::process::Command;
 
+use super::bundle;
 use super::machine::{self, During, Failure, Outcome};
 use super::wasm::{Compiler, TARGET};
-use super::bundle;
 use crate::webdriver;
 
 const HELP: &str = "\
