@@ -20,5 +20,10 @@ fn place() -> Option<Element> {
 
 #[function_component]
 fn Page() -> Html {
-    html! { <main><h1>{ "Chordwright" }</h1></main> }
+    html! {
+        <main>
+            <h1>{ "Chordwright" }</h1>
+            <p>{ "Geometry only. A licensed engineer must verify this design, and local codes govern." }</p>
+        </main>
+    }
 }
