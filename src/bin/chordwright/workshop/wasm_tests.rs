@@ -32,8 +32,11 @@ pub(crate) fn run(arguments: &[String]) -> Outcome<()> {
     if done["passed"] == Value::Bool(true) {
         return Ok(());
     }
-    let error = done["error"].as_str().unwrap_or_default();
-    Err(Failure::new(format!("tests in the browser failed {error}\n{}", console(&driver))))
+    // A test that failed has said why by itself; only when all of them stopped is there more to be told.
+    Err(match done["error"].as_str() {
+        Some(error) => Failure::new(format!("the tests did not run to their end: {error}\n{}", console(&driver))),
+        None => Failure::new("tests in the browser failed"),
+    })
 }
 
 /// Which tests are to be run, out of the arguments that a test program understands.
