@@ -4,3 +4,6 @@ pub mod state;
 
 #[cfg(target_arch = "wasm32")]
 pub mod web;
+
+#[cfg(target_arch = "wasm32")]
+pub use web::mount;

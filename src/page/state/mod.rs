@@ -26,7 +26,7 @@ mod update;
 pub mod view;
 
 pub use camera::{Camera, Pixel};
-pub use cells::{Cell, Column, Row};
+pub use cells::{Cell, Column, Row, understood};
 pub use checked::Checked;
 pub use event::{Button, Effect, Event, KeyPress, Modifiers, PointerAct};
 pub use files::DEMOS;

@@ -1,0 +1,120 @@
+//! Answers off the main thread: one worker, one question at a time, the newest truss first.
+
+use super::worker::{Answer, answer};
+use crate::page::state::Event as PageEvent;
+use crate::truss::Truss;
+use gloo::events::EventListener;
+use js_sys::{Function, Object, Reflect};
+use std::cell::RefCell;
+use std::rc::Rc;
+use wasm_bindgen::{JsCast, JsValue};
+use web_sys::{MessageEvent, Worker};
+use yew::Callback;
+
+/// Asks for answers and hands them back as events.
+#[derive(Clone)]
+pub(super) struct Checker {
+    inner: Rc<RefCell<Inner>>,
+}
+
+struct Inner {
+    on: Callback<PageEvent>,
+    worker: Option<(Worker, [EventListener; 2])>,
+    /// The revision that is being worked on.
+    busy: Option<u64>,
+    /// The revision that is to be worked on next.
+    next: Option<(u64, Rc<Truss>)>,
+}
+
+impl Checker {
+    pub(super) fn new(on: Callback<PageEvent>) -> Checker {
+        Checker { inner: Rc::new(RefCell::new(Inner { on, worker: None, busy: None, next: None })) }
+    }
+
+    /// Asks for answers to a revision. An older one that is still being worked on is given up.
+    pub(super) fn ask(&self, revision: u64, truss: Rc<Truss>) {
+        {
+            let mut inner = self.inner.borrow_mut();
+            inner.next = Some((revision, truss));
+            if inner.busy.take().is_some() {
+                if let Some((worker, _)) = inner.worker.take() {
+                    worker.terminate();
+                }
+            }
+        }
+        self.send();
+    }
+
+    fn send(&self) {
+        let Some((revision, truss)) = self.inner.borrow_mut().next.take() else { return };
+        if self.worker_ready() && self.post(revision, &truss) {
+            self.inner.borrow_mut().busy = Some(revision);
+        } else {
+            let Answer { report, fingerprint } = answer(&truss);
+            let on = self.inner.borrow().on.clone();
+            on.emit(PageEvent::Answered(revision, Box::new(report), fingerprint));
+        }
+    }
+
+    fn post(&self, revision: u64, truss: &Truss) -> bool {
+        let Ok(text) = serde_json::to_string(truss) else { return false };
+        let message = Object::new();
+        let set = |key: &str, value: JsValue| Reflect::set(&message, &key.into(), &value).is_ok();
+        if !set("id", JsValue::from_f64(revision as f64)) || !set("text", text.into()) {
+            return false;
+        }
+        let inner = self.inner.borrow();
+        inner.worker.as_ref().is_some_and(|(worker, _)| worker.post_message(&message).is_ok())
+    }
+
+    /// Makes the worker if there is none; false where there can be none, and the work is done on the spot.
+    fn worker_ready(&self) -> bool {
+        if self.inner.borrow().worker.is_none()
+            && let Some(worker) = make_worker()
+        {
+            let (heard, failed) = (self.clone(), self.clone());
+            let listeners = [
+                EventListener::new(&worker, "message", move |event| heard.receive(event)),
+                EventListener::new(&worker, "error", move |_| failed.failed("the worker stopped")),
+            ];
+            self.inner.borrow_mut().worker = Some((worker, listeners));
+        }
+        self.inner.borrow().worker.is_some()
+    }
+
+    fn receive(&self, event: &web_sys::Event) {
+        let Some(data) = event.dyn_ref::<MessageEvent>().map(MessageEvent::data) else { return };
+        let get = |key: &str| Reflect::get(&data, &key.into()).ok();
+        let Some(revision) = get("id").and_then(|id| id.as_f64()).map(|id| id as u64) else { return };
+        let read = get("text").and_then(|text| text.as_string()).and_then(|text| serde_json::from_str(&text).ok());
+        match read {
+            Some(Answer { report, fingerprint }) => {
+                self.inner.borrow_mut().busy = None;
+                let on = self.inner.borrow().on.clone();
+                on.emit(PageEvent::Answered(revision, Box::new(report), fingerprint));
+                self.send();
+            }
+            None => self.failed("the worker gave no answer"),
+        }
+    }
+
+    fn failed(&self, why: &str) {
+        let on = {
+            let mut inner = self.inner.borrow_mut();
+            inner.busy = None;
+            // Dropped later than now: this may run inside one of its listeners.
+            if let Some((worker, listeners)) = inner.worker.take() {
+                worker.terminate();
+                gloo::timers::callback::Timeout::new(0, move || drop(listeners)).forget();
+            }
+            inner.on.clone()
+        };
+        on.emit(PageEvent::CheckFailed(why.into()));
+    }
+}
+
+/// A new worker with the same program, where the document provides them.
+fn make_worker() -> Option<Worker> {
+    let make = Reflect::get(&js_sys::global(), &"chordwrightWorker".into()).ok()?;
+    make.dyn_into::<Function>().ok()?.call0(&JsValue::NULL).ok()?.dyn_into().ok()
+}
