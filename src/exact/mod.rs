@@ -7,6 +7,7 @@
 //!
 //! This room knows nothing of trusses, units or trade notation, and holds no floating-point number.
 
+mod arc;
 mod interval;
 mod laws;
 mod point;
@@ -14,6 +15,7 @@ mod predicates;
 mod rational;
 mod surd;
 
+pub use arc::{degrees_of, degrees_of_spread, nearest_degrees, nearest_degrees_of_spread, spread_of_degrees};
 pub use interval::Interval;
 pub use laws::{
     archimedes, cross, cross_law_residual, pythagoras_residual, quadrance, spread, spread_between, spread_polynomial,

@@ -144,8 +144,10 @@ fn pinch(state: &mut State, mut fingers: [(i32, Pixel); 2], id: i32, at: Pixel) 
     fingers[finger].1 = at;
     let stretch = at.distance(other) / before.distance(other).max(1.0);
     let (middle_before, middle) = (before.towards(other, 0.5), at.towards(other, 0.5));
-    state.camera =
-        state.camera.panned(middle.x - middle_before.x, middle.y - middle_before.y).zoomed(stretch.clamp(0.2, 5.0), middle);
+    state.camera = state
+        .camera
+        .panned(middle.x - middle_before.x, middle.y - middle_before.y)
+        .zoomed(stretch.clamp(0.2, 5.0), middle);
     state.drag = Drag::Pinch { fingers };
 }
 

@@ -147,7 +147,8 @@ fn sheet_edit(truss: &Truss, column: Column, text: &str) -> Result<(Edit, String
     match column {
         Column::Step => Ok((Edit::Step(length(truss, text)?), "changed the step".into())),
         Column::Unit => {
-            let unit = Unit::from_symbol(text).ok_or_else(|| format!("`{text}` is not a unit; expected in, ft, mm, cm or m"))?;
+            let unit = Unit::from_symbol(text)
+                .ok_or_else(|| format!("`{text}` is not a unit; expected in, ft, mm, cm or m"))?;
             Ok((Edit::Unit(unit), format!("changed the unit to {}", unit.symbol())))
         }
         _ => Ok((Edit::Title(text.chars().filter(|c| !c.is_control()).collect()), "changed the title".into())),

@@ -34,7 +34,8 @@ fn next_mark(truss: &Truss, point: &Point) -> String {
 /// Makes a member between two joints, unless there is one already.
 pub(super) fn add_member(state: &mut State, from: JointId, to: JointId, effects: &mut Vec<Effect>) {
     let truss = &state.truss;
-    if let Some(there) = truss.members.iter().find(|member| member.ends() == [from, to] || member.ends() == [to, from]) {
+    if let Some(there) = truss.members.iter().find(|member| member.ends() == [from, to] || member.ends() == [to, from])
+    {
         let text = format!("{} joins {} and {} already.", there.mark, truss.mark(from), truss.mark(to));
         return say(state, Tone::Refused, text);
     }
@@ -148,6 +149,7 @@ pub(super) fn name_selection(truss: &Truss, selection: &Selection) -> String {
 
 /// With the pen down, pressing a second joint keeps the first, so that a figure between them can be typed.
 pub(super) fn press_thing(state: &mut State, thing: Thing) {
-    let pair = matches!((&thing, &state.selection), (Thing::Joint(_), s) if s.joints.len() == 1 && s.members.is_empty());
+    let pair =
+        matches!((&thing, &state.selection), (Thing::Joint(_), s) if s.joints.len() == 1 && s.members.is_empty());
     choose(state, thing, pair);
 }

@@ -21,9 +21,8 @@ use num_traits::{Signed, Zero};
 /// The most panels that one string may have.
 const MOST_PANELS: usize = 1000;
 
-const KINDS: [&str; 12] = [
-    "length", "run", "rise", "pitch", "angle", "spread", "square", "in line", "parallel", "equal", "level", "plumb",
-];
+const KINDS: [&str; 12] =
+    ["length", "run", "rise", "pitch", "angle", "spread", "square", "in line", "parallel", "equal", "level", "plumb"];
 
 /// Splits a line at tabs or semicolons, else at commas, else at blanks.
 fn parts(line: &str) -> Vec<&str> {
@@ -56,7 +55,9 @@ fn split_in_two(truss: &Truss, parts: &[&str]) -> Result<(Written, Written), Str
     });
     match (ways.next(), ways.next()) {
         (Some(way), None) => Ok(way),
-        (Some(_), Some(_)) => Err("the two coordinates can be told apart in more than one way; put a comma between them".into()),
+        (Some(_), Some(_)) => {
+            Err("the two coordinates can be told apart in more than one way; put a comma between them".into())
+        }
         _ => {
             length(truss, parts[0])?;
             length(truss, &parts[1..].join(" "))?;
@@ -73,7 +74,8 @@ pub(super) fn read_member_line(truss: &Truss, line: &str) -> Result<Edit, String
     };
     let (from, to) = (joint_named(truss, from)?, joint_named(truss, to)?);
     let rest = rest.join(" ");
-    let named = Role::ALL.into_iter().find(|role| rest == role.name() || rest.starts_with(&format!("{} ", role.name())));
+    let named =
+        Role::ALL.into_iter().find(|role| rest == role.name() || rest.starts_with(&format!("{} ", role.name())));
     let mark = named.map_or(rest.as_str(), |role| rest[role.name().len()..].trim());
     let role = named.unwrap_or_else(|| likely_role(truss, from, to));
     let mark = if mark.is_empty() { truss.free_member_mark(role) } else { mark.to_string() };
@@ -121,7 +123,9 @@ pub(super) fn read_figures(truss: &Truss, selection: &Selection, line: &str) -> 
         kind => vec![valued(truss, kind, &joints, &words.value)?],
     };
     if let Some(step) = step {
-        let is_length = |kind: &FigureKind| !matches!(kind, FigureKind::Pitch { .. } | FigureKind::Angle { .. } | FigureKind::Spread { .. });
+        let is_length = |kind: &FigureKind| {
+            !matches!(kind, FigureKind::Pitch { .. } | FigureKind::Angle { .. } | FigureKind::Spread { .. })
+        };
         for figure in &mut figures {
             figure.step = Some(if is_length(&figure.kind) { length(truss, step)? } else { plain(step)? });
         }
@@ -281,7 +285,9 @@ fn pair_figure(truss: &Truss, kind: Option<&str>, from: JointId, to: JointId, va
             let [from, to] = along(from, to, &delta(truss, from, to).1, &value);
             Ok(figure(FigureKind::Rise { from, to, value }))
         }
-        other => Err(format!("{} {other} stands at a corner of three joints", if other == "angle" { "an" } else { "a" })),
+        other => {
+            Err(format!("{} {other} stands at a corner of three joints", if other == "angle" { "an" } else { "a" }))
+        }
     }
 }
 

@@ -32,7 +32,5 @@ pub use event::{Button, Effect, Event, KeyPress, Modifiers, PointerAct};
 pub use files::DEMOS;
 pub use history::History;
 pub use keys::{KEYS, KeyHelp};
-pub use model::{
-    Book, Drag, Message, Pen, Refused, Shown, Source, State, Theme, Thing, Tone,
-};
+pub use model::{Book, Drag, Message, Pen, Refused, Shown, Source, State, Theme, Thing, Tone};
 pub use update::update;

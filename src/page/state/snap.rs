@@ -53,7 +53,8 @@ fn to_lattice(value: f64, grid: &Rational) -> Rational {
 pub(super) fn visible_step(truss: &Truss, camera: &Camera) -> Rational {
     let ladder: Vec<Rational> = if truss.unit.is_imperial() {
         let inch = Unit::In.in_units_of(truss.unit);
-        let inches = [(1, 16), (1, 8), (1, 4), (1, 2), (1, 1), (3, 1), (6, 1), (12, 1), (24, 1), (60, 1), (120, 1), (600, 1)];
+        let inches =
+            [(1, 16), (1, 8), (1, 4), (1, 2), (1, 1), (3, 1), (6, 1), (12, 1), (24, 1), (60, 1), (120, 1), (600, 1)];
         inches.iter().map(|&(n, d)| ratio(n, d) * &inch).collect()
     } else {
         let mm = Unit::Mm.in_units_of(truss.unit);

@@ -250,9 +250,8 @@ fn take_implied(state: &mut State, index: usize, effects: &mut Vec<Effect>) {
 }
 
 fn enter_cell(state: &mut State, cell: Cell, text: String, effects: &mut Vec<Effect>) {
-    let result = edit_of(&state.truss, cell, &text).and_then(|(edit, label)| {
-        state.truss.edited(&edit).map_err(|error| error.to_string()).map(|_| (edit, label))
-    });
+    let result = edit_of(&state.truss, cell, &text)
+        .and_then(|(edit, label)| state.truss.edited(&edit).map_err(|error| error.to_string()).map(|_| (edit, label)));
     match result {
         Ok((edit, label)) => {
             state.refused = None;

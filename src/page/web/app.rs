@@ -222,7 +222,8 @@ fn listeners(on: &Callback<PageEvent>) -> Vec<EventListener> {
 
 /// The key press that the page takes in; `None` for keys that belong to a text box or a control.
 fn key_press(event: &KeyboardEvent) -> Option<KeyPress> {
-    let held = Modifiers { shift: event.shift_key(), control: event.ctrl_key() || event.meta_key(), alt: event.alt_key() };
+    let held =
+        Modifiers { shift: event.shift_key(), control: event.ctrl_key() || event.meta_key(), alt: event.alt_key() };
     let key = event.key();
     let tag = event.target().and_then(|target| target.dyn_into::<Element>().ok()).map(|element| element.tag_name());
     let in_text = matches!(tag.as_deref(), Some("INPUT" | "TEXTAREA" | "SELECT"));
@@ -235,7 +236,8 @@ fn key_press(event: &KeyboardEvent) -> Option<KeyPress> {
         "Enter" | " " => !on_control,
         _ => true,
     };
-    let prevents = held.control || matches!(key.as_str(), "ArrowLeft" | "ArrowRight" | "ArrowUp" | "ArrowDown" | "Backspace" | "Enter");
+    let prevents = held.control
+        || matches!(key.as_str(), "ArrowLeft" | "ArrowRight" | "ArrowUp" | "ArrowDown" | "Backspace" | "Enter");
     let begins_value = key.len() == 1 && key.starts_with(|c: char| c.is_ascii_digit() || matches!(c, '.' | '(' | '-'));
     if ours && (prevents || begins_value) {
         event.prevent_default();

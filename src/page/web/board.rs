@@ -73,7 +73,8 @@ fn empty_board(pen: Pen, on: &Callback<PageEvent>) -> Html {
 fn selection_bar(selection: &SelectionView, on: &Callback<PageEvent>) -> Html {
     let act = |event: PageEvent| on.reform(move |_: MouseEvent| event.clone());
     let role = on.reform(|event: yew::Event| {
-        let name = event.target_dyn_into::<web_sys::HtmlSelectElement>().map(|select| select.value()).unwrap_or_default();
+        let name =
+            event.target_dyn_into::<web_sys::HtmlSelectElement>().map(|select| select.value()).unwrap_or_default();
         PageEvent::RoleChosen(Role::from_name(&name).unwrap_or_default())
     });
     html! {
@@ -203,7 +204,11 @@ impl Pointers {
     }
 
     fn moved(&self) -> Callback<PointerEvent> {
-        self.callback(|board, event| PointerAct::Move { id: event.pointer_id(), at: place(board, event), held: held(event) })
+        self.callback(|board, event| PointerAct::Move {
+            id: event.pointer_id(),
+            at: place(board, event),
+            held: held(event),
+        })
     }
 
     fn up(&self) -> Callback<PointerEvent> {
@@ -239,7 +244,9 @@ struct EntryProps {
 #[component]
 fn Entry(props: &EntryProps) -> Html {
     let typed = props.on.reform(|event: InputEvent| {
-        PageEvent::EntryTyped(event.target_dyn_into::<HtmlTextAreaElement>().map(|area| area.value()).unwrap_or_default())
+        PageEvent::EntryTyped(
+            event.target_dyn_into::<HtmlTextAreaElement>().map(|area| area.value()).unwrap_or_default(),
+        )
     });
     let on = props.on.clone();
     let keys = Callback::from(move |event: KeyboardEvent| match event.key().as_str() {

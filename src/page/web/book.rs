@@ -77,7 +77,9 @@ fn table_cell(props: &BookProps, at: (usize, usize), view: &CellView) -> Html {
     let body = match (view.cell, &view.kind) {
         (Some(cell), CellKind::Check(yes)) => check(cell, view, *yes, &props.on),
         (Some(cell), CellKind::Choice(names)) => choice(cell, view, names, &props.on),
-        (Some(cell), _) => html! { <Field view={view.clone()} {cell} {at} truss={props.truss.clone()} on={props.on.clone()} /> },
+        (Some(cell), _) => {
+            html! { <Field view={view.clone()} {cell} {at} truss={props.truss.clone()} on={props.on.clone()} /> }
+        }
         (None, _) => html! { { &view.text } },
     };
     html! { <td {class}>{ body }</td> }

@@ -60,12 +60,13 @@ pub(super) fn Field(props: &FieldProps) -> Html {
     let blur = commit.reform(|_: FocusEvent| ());
     let hint = draft.as_ref().and_then(|text| understood(&props.truss, cell, text));
     let shown = draft.as_ref().cloned().unwrap_or_else(|| props.view.text.clone());
+    let rows = shown.lines().count().clamp(1, 6).to_string();
     let id = format!("cell-{}-{}", props.at.0, props.at.1);
     let invalid = !props.view.error.is_empty() || matches!(hint, Some(Err(_)));
     let class = if props.view.kind == CellKind::Value { "field value" } else { "field" };
     let input = match cell.column {
         Column::Line => html! {
-            <textarea {id} class="field line" rows={shown.lines().count().clamp(1, 6).to_string()} value={shown} placeholder={props.placeholder}
+            <textarea {id} class="field line" {rows} value={shown} placeholder={props.placeholder}
                 aria-label={props.view.label.clone()} aria-invalid={invalid.to_string()} spellcheck="false" oninput={typed} onkeydown={keys} onblur={blur} />
         },
         _ => html! {

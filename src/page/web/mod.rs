@@ -10,8 +10,8 @@ mod evidence;
 mod field;
 mod head;
 mod mount;
-mod shell;
 mod sheet;
+mod shell;
 mod start;
 mod worker;
 

@@ -17,7 +17,9 @@ pub(super) struct StartProps {
 pub(super) fn Start(props: &StartProps) -> Html {
     let act = |event: PageEvent| props.on.reform(move |_: MouseEvent| event.clone());
     let link = props.on.reform(|event: yew::Event| {
-        PageEvent::LinkArrived(event.target_dyn_into::<HtmlInputElement>().map(|input| input.value()).unwrap_or_default())
+        PageEvent::LinkArrived(
+            event.target_dyn_into::<HtmlInputElement>().map(|input| input.value()).unwrap_or_default(),
+        )
     });
     html! {
         <main class="start">

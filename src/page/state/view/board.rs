@@ -32,7 +32,11 @@ impl Turned {
     /// The value of `transform` for a label.
     pub fn attribute(label: &LabelView) -> String {
         let (x, y) = (tenths(label.at.x), tenths(label.at.y));
-        if label.turn == 0.0 { format!("translate({x} {y})") } else { format!("translate({x} {y}) rotate({})", tenths(label.turn)) }
+        if label.turn == 0.0 {
+            format!("translate({x} {y})")
+        } else {
+            format!("translate({x} {y}) rotate({})", tenths(label.turn))
+        }
     }
 }
 
@@ -56,7 +60,10 @@ impl<'a> Board<'a> {
     }
 
     pub(super) fn ends(&self, id: MemberId) -> [Pixel; 2] {
-        self.truss.members.get(id.index()).map_or_else(Default::default, |member| member.ends().map(|id| self.pixel(id)))
+        self.truss
+            .members
+            .get(id.index())
+            .map_or_else(Default::default, |member| member.ends().map(|id| self.pixel(id)))
     }
 
     /// True when a line between the pixels can be seen.
@@ -123,7 +130,9 @@ fn caption(state: &State) -> String {
         Shown::Layout => "Showing the layout that closes".into(),
         Shown::Without(index) => {
             let suspect = state.fresh().and_then(|checked| checked.report.answers.close.suspects.get(index));
-            suspect.map_or_else(String::new, |s| format!("Showing the layout without {}", state.truss.figure(s.figure).mark))
+            suspect.map_or_else(String::new, |s| {
+                format!("Showing the layout without {}", state.truss.figure(s.figure).mark)
+            })
         }
     }
 }
@@ -209,11 +218,10 @@ fn draw_supports(board: &Board, paths: &mut Vec<Option<PathView>>) {
         let (nx, ny) = if length > 0.0 { (normal.0 / length, -normal.1 / length) } else { (0.0, -1.0) };
         let at = board.pixel(support.joint);
         // `along` runs against the normal, away from the truss; `aside` square to it.
-        let place = |along: f64, aside: f64| {
-            Pixel::new(at.x - nx * along - ny * aside, at.y - ny * along + nx * aside)
-        };
+        let place = |along: f64, aside: f64| Pixel::new(at.x - nx * along - ny * aside, at.y - ny * along + nx * aside);
         solid.polygon(&[place(5.0, 0.0), place(19.0, -9.0), place(19.0, 9.0)]);
-        ground.line(place(if is_roller { 23.5 } else { 19.0 }, -15.0), place(if is_roller { 23.5 } else { 19.0 }, 15.0));
+        ground
+            .line(place(if is_roller { 23.5 } else { 19.0 }, -15.0), place(if is_roller { 23.5 } else { 19.0 }, 15.0));
     }
     paths.push(ground.view("ground"));
     paths.push(solid.view("support"));
@@ -307,5 +315,11 @@ fn motion(board: &Board) -> Option<[String; 3]> {
 }
 
 pub(super) fn figure_text(board: &Board, id: FigureId) -> String {
-    board.truss.figures.get(id.index()).and_then(|figure| figure.kind.value_text()).map(|text| pretty(&text)).unwrap_or_default()
+    board
+        .truss
+        .figures
+        .get(id.index())
+        .and_then(|figure| figure.kind.value_text())
+        .map(|text| pretty(&text))
+        .unwrap_or_default()
 }

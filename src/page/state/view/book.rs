@@ -99,7 +99,15 @@ pub fn book_view(state: &State) -> BookView {
     let page = start..(start + PAGE_ROWS).min(total);
     let maker = Maker { state, truss, checked: state.fresh().map(|checked| &**checked) };
     let (line, example) = maker.line();
-    BookView { book: state.book, counts, rows: page.map(|index| maker.row(index)).collect(), start, total, line, example }
+    BookView {
+        book: state.book,
+        counts,
+        rows: page.map(|index| maker.row(index)).collect(),
+        start,
+        total,
+        line,
+        example,
+    }
 }
 
 struct Maker<'a> {
@@ -165,7 +173,13 @@ impl Maker<'_> {
                 self.entered(row, Column::Mark, mark.clone(), CellKind::Text, format!("mark of joint {mark}")),
                 self.entered(row, Column::X, joint.x.text.clone(), CellKind::Value, format!("{mark}, distance right")),
                 self.entered(row, Column::Y, joint.y.text.clone(), CellKind::Value, format!("{mark}, distance up")),
-                self.entered(row, Column::Loose, String::new(), CellKind::Check(joint.loose), format!("{mark} is loose")),
+                self.entered(
+                    row,
+                    Column::Loose,
+                    String::new(),
+                    CellKind::Check(joint.loose),
+                    format!("{mark} is loose"),
+                ),
                 self.shown(spreads.unwrap_or_default(), CellKind::Words),
             ],
         }
@@ -184,7 +198,13 @@ impl Maker<'_> {
                 self.entered(row, Column::Mark, mark.clone(), CellKind::Text, format!("mark of member {mark}")),
                 self.entered(row, Column::From, end(member.from), CellKind::Text, format!("{mark} from")),
                 self.entered(row, Column::To, end(member.to), CellKind::Text, format!("{mark} to")),
-                self.entered(row, Column::Role, member.role.name().into(), CellKind::Choice(&ROLES), format!("role of {mark}")),
+                self.entered(
+                    row,
+                    Column::Role,
+                    member.role.name().into(),
+                    CellKind::Choice(&ROLES),
+                    format!("role of {mark}"),
+                ),
                 number(|row| if row.exact { row.length.clone() } else { format!("~ {}", row.length) }),
                 number(|row| row.bevel.clone()),
                 number(|row| row.degrees.clone()),

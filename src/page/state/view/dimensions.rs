@@ -41,13 +41,25 @@ pub(super) fn draw_strings(board: &Board, labels: &mut Labels, paths: &mut Vec<O
     for (row, span, text) in rows(runs) {
         let y = below + row as f64 * APART;
         let place = |x: f64| Pixel::new(x, y);
-        let label = LabelView { at: Pixel::new((span.lo + span.hi) / 2.0, y - 9.0), turn: 0.0, anchor: Anchor::Middle, class: "", text };
+        let label = LabelView {
+            at: Pixel::new((span.lo + span.hi) / 2.0, y - 9.0),
+            turn: 0.0,
+            anchor: Anchor::Middle,
+            class: "",
+            text,
+        };
         lines.dimension(board, labels, &span, [place(span.lo), place(span.hi)], label);
     }
     for (row, span, text) in rows(rises) {
         let x = right + row as f64 * APART;
         let place = |y: f64| Pixel::new(x, y);
-        let label = LabelView { at: Pixel::new(x - 9.0, (span.lo + span.hi) / 2.0), turn: -90.0, anchor: Anchor::Middle, class: "", text };
+        let label = LabelView {
+            at: Pixel::new(x - 9.0, (span.lo + span.hi) / 2.0),
+            turn: -90.0,
+            anchor: Anchor::Middle,
+            class: "",
+            text,
+        };
         lines.dimension(board, labels, &span, [place(span.lo), place(span.hi)], label);
     }
     paths.push(lines.ticks.view("tick"));
@@ -143,7 +155,8 @@ fn with_panels(placed: &[(usize, Span, String)], whole: &Span) -> String {
 /// Draws lengths along their lines, and pitches below theirs.
 pub(super) fn draw_lengths(board: &Board, labels: &mut Labels, paths: &mut Vec<Option<PathView>>) {
     let mut lines = PathText::default();
-    let mut ordered: Vec<(usize, &crate::truss::Figure)> = board.truss.figures.iter().enumerate().take(4 * MOST).collect();
+    let mut ordered: Vec<(usize, &crate::truss::Figure)> =
+        board.truss.figures.iter().enumerate().take(4 * MOST).collect();
     ordered.sort_by_key(|(index, _)| !board.doubtful.contains(&FigureId::new(*index)));
     for (index, figure) in ordered {
         let (from, to, side) = match figure.kind {
@@ -199,7 +212,14 @@ pub(super) fn draw_corners(board: &Board, labels: &mut Labels, paths: &mut Vec<O
     paths.push(arcs.view("dimension corner"));
 }
 
-fn corner(board: &Board, labels: &mut Labels, arcs: &mut PathText, id: FigureId, joints: [JointId; 3], is_square: bool) {
+fn corner(
+    board: &Board,
+    labels: &mut Labels,
+    arcs: &mut PathText,
+    id: FigureId,
+    joints: [JointId; 3],
+    is_square: bool,
+) {
     let [at, from, to] = joints.map(|joint| board.pixel(joint));
     let unit = |end: Pixel, out: f64| at.towards(end, out / at.distance(end).max(1e-6));
     if is_square {

@@ -137,7 +137,8 @@ fn suspect_view(state: &State, truss: &Truss, index: usize, suspect: &Suspect) -
         implied: pretty(&suspect.implied),
         range: pretty(&range),
         slip: suspect.slip.map(|slip| slip.name().to_string()).unwrap_or_default(),
-        open: state.open_suspect == Some(index) || (index == 0 && state.open_suspect.is_none() && state.open_finding.is_none()),
+        open: state.open_suspect == Some(index)
+            || (index == 0 && state.open_suspect.is_none() && state.open_finding.is_none()),
         shown: state.shown == Shown::Without(index),
     }
 }
@@ -153,10 +154,11 @@ fn finding_view(state: &State, truss: &Truss, index: usize, finding: &Finding) -
         thing: first_thing(finding),
         open,
         lines: if open { finding.evidence.iter().map(line).collect() } else { Vec::new() },
-        mend: finding.mend.as_ref().filter(|_| open).map(|mend| MendView {
-            text: pretty(&mend.text),
-            can: mend.edit.is_some() && state.fresh().is_some(),
-        }),
+        mend: finding
+            .mend
+            .as_ref()
+            .filter(|_| open)
+            .map(|mend| MendView { text: pretty(&mend.text), can: mend.edit.is_some() && state.fresh().is_some() }),
     }
 }
 
@@ -211,7 +213,9 @@ fn sentence(checked: &Checked, question: Question) -> String {
         Question::Stands => match answers.stands.state {
             StandsState::Rigid => "Members and supports hold every joint, by exact rank.".into(),
             StandsState::Mechanism => "It moves: the drawing shows one motion that changes no member's length.".into(),
-            StandsState::CriticalForm => "Enough members, well placed in number, yet this very geometry lets it move.".into(),
+            StandsState::CriticalForm => {
+                "Enough members, well placed in number, yet this very geometry lets it move.".into()
+            }
             StandsState::NoSupports => "Nothing holds it, so it is judged as a free body.".into(),
         },
         Question::Cut => "Lengths along the working lines, each rounded once and correctly.".into(),
@@ -237,7 +241,9 @@ fn numbers(checked: &Checked, question: Question) -> Vec<(String, String)> {
     let (truss, answers) = (&checked.truss, &checked.report.answers);
     let row = |name: &str, value: String| (name.to_string(), value);
     match question {
-        Question::Close => vec![row("figures", truss.figures.len().to_string()), row("proof", answers.close.proof.name().into())],
+        Question::Close => {
+            vec![row("figures", truss.figures.len().to_string()), row("proof", answers.close.proof.name().into())]
+        }
         Question::True => Vec::new(),
         Question::Clear => vec![row("panels", answers.clear.panels.len().to_string())],
         Question::Stands => vec![

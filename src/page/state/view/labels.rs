@@ -90,7 +90,9 @@ impl Labels {
     fn is_free(&self, disc: Pixel) -> bool {
         let (x, y) = tile(disc);
         let near = (x - 1..=x + 1).flat_map(|x| (y - 1..=y + 1).map(move |y| (x, y)));
-        near.filter_map(|key| self.taken.get(&key)).flatten().all(|other| disc.distance(*other) >= 2.0 * HALF_HEIGHT - 2.0)
+        near.filter_map(|key| self.taken.get(&key))
+            .flatten()
+            .all(|other| disc.distance(*other) >= 2.0 * HALF_HEIGHT - 2.0)
     }
 
     /// Places the first of the proposals that has room; says whether one had.
@@ -147,9 +149,14 @@ mod tests {
     #[test]
     fn texts_read_from_below_or_from_the_right() {
         let origin = Pixel::new(0.0, 0.0);
-        for (x, y, expected) in [(1.0, 0.0, 0.0), (-1.0, 0.0, 0.0), (0.0, -1.0, 90.0), (0.0, 1.0, -90.0), (-1.0, -1.0, 45.0)] {
+        for (x, y, expected) in
+            [(1.0, 0.0, 0.0), (-1.0, 0.0, 0.0), (0.0, -1.0, 90.0), (0.0, 1.0, -90.0), (-1.0, -1.0, 45.0)]
+        {
             let turn = reading_turn(origin, Pixel::new(x, y));
-            assert!((turn.abs() - f64::abs(expected)).abs() < 1e-9 && (-90.0..=90.0).contains(&turn), "{x} {y}: {turn}");
+            assert!(
+                (turn.abs() - f64::abs(expected)).abs() < 1e-9 && (-90.0..=90.0).contains(&turn),
+                "{x} {y}: {turn}"
+            );
         }
     }
 }

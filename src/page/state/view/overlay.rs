@@ -132,7 +132,8 @@ fn draw_act(board: &Board, view: &mut OverlayView) {
                 let snapped = snap(board.truss, &state.camera, pointer, false, &[]);
                 let at = state.camera.pixel(&snapped.point);
                 ghost.circle(at, 3.6);
-                let words = crate::page::state::board_events::snapped_words(board.truss, &snapped.point, &snapped.words);
+                let words =
+                    crate::page::state::board_events::snapped_words(board.truss, &snapped.point, &snapped.words);
                 note(view, at, &words);
             }
         }

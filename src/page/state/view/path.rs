@@ -85,7 +85,9 @@ mod tests {
 
     #[test]
     fn numbers_have_one_decimal() {
-        for (value, expected) in [(0.0, "0"), (-0.04, "0"), (12.34, "12.3"), (-7.96, "-8"), (-0.5, "-0.5"), (f64::NAN, "0")] {
+        for (value, expected) in
+            [(0.0, "0"), (-0.04, "0"), (12.34, "12.3"), (-7.96, "-8"), (-0.5, "-0.5"), (f64::NAN, "0")]
+        {
             assert_eq!(tenths(value), expected);
         }
     }
