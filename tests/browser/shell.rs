@@ -1,5 +1,7 @@
 //! The shell: the file starts by itself, asks nothing of anybody, and brings its worker along.
 
+use base64::Engine as _;
+use base64::engine::general_purpose::STANDARD as BASE64;
 use serde_json::json;
 
 use crate::support::Page;
@@ -62,4 +64,36 @@ fn a_request_that_left_the_page_would_be_seen() {
     page.wait_for_text("#app", NOTICE);
     assert_eq!(page.requests(), ["http://127.0.0.1:9/asked"]);
     assert!(!page.complaints().is_empty());
+}
+
+#[test]
+#[ignore = "needs the built page and Chromium: cargo verify"]
+fn a_document_that_embeds_the_module_stays_as_it_was() {
+    let page = Page::embedding("host", "<div id=\"app\">a place of its own</div>");
+    assert_eq!(page.text("#app"), "a place of its own");
+    page.assert_quiet();
+}
+
+#[test]
+#[ignore = "needs the built page and Chromium: cargo verify"]
+fn its_unpacking_gives_back_what_was_packed() {
+    let page = Page::open();
+    for sample in samples() {
+        for level in [0, 1, 6, 10] {
+            let packed = BASE64.encode(miniz_oxide::deflate::compress_to_vec(&sample, level));
+            let unpacked = page.run(
+                "const bytes = Uint8Array.from(atob(arguments[0]), (letter) => letter.charCodeAt(0));
+                 return Array.from(inflate(bytes, arguments[1]));",
+                &[json!(packed), json!(sample.len())],
+            );
+            assert_eq!(unpacked, json!(sample), "{} bytes at level {level}", sample.len());
+        }
+    }
+}
+
+/// Bytes of every kind that packing treats differently: none, few, alike, in words, and without any order.
+fn samples() -> Vec<Vec<u8>> {
+    let without_order = (0_u32..70_000).map(|i| (i.wrapping_mul(2_654_435_761) >> 13) as u8).collect();
+    let words = "top chord, bottom chord, web, post; ".repeat(900).into_bytes();
+    vec![vec![], vec![7], b"abcabcabcabd".to_vec(), vec![0; 66_000], words, without_order]
 }

@@ -107,6 +107,29 @@ impl Page {
         page
     }
 
+    /// Opens a document of somebody else's (this is its body) that embeds the built module. When this returns, the module
+    /// has started and its exports are in `globalThis.chordwright`: `page.run("return chordwright.report(..)", &[])`.
+    pub(crate) fn embedding(name: &str, body: &str) -> Self {
+        let module = built_page().with_file_name("module");
+        let read = |file| BASE64.encode(fs::read(module.join(file)).expect("the module is built with the page"));
+        let (script, program) = (read("chordwright.js"), read("chordwright_bg.wasm"));
+        let text = format!(
+            "<!doctype html><meta charset=\"utf-8\"><title>Host</title><body>{body}</body>
+             <script type=\"module\">
+             import * as chordwright from \"data:text/javascript;base64,{script}\";
+             const bytes = Uint8Array.from(atob(\"{program}\"), (letter) => letter.charCodeAt(0));
+             await chordwright.default({{ module_or_path: bytes }});
+             globalThis.chordwright = chordwright;
+             </script>"
+        );
+        let file = made(&target().join("changed-pages")).join(format!("{name}.html"));
+        fs::write(&file, text).expect("the document can be written");
+        let page = Self::new(&file);
+        done(page.driver.open(&page.address));
+        page.wait("the module", "return globalThis.chordwright !== undefined", &[]);
+        page
+    }
+
     fn new(file: &Path) -> Self {
         let driver = done(Driver::start());
         let address = webdriver::file_address(&whole(file));

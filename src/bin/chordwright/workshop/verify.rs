@@ -92,7 +92,15 @@ fn advice() -> Outcome<()> {
     }
     let mut command = cargo(&["clippy", "--quiet", "--all-targets"])?;
     command.args(FEATURES).args(["--", "-D", "warnings"]);
-    machine::run(&mut command, "the compiler has something to say about the sources")
+    machine::run(&mut command, "the compiler has something to say about the sources")?;
+    // What is compiled for the browser only. Debian's compiler brings no clippy.
+    let compiler = Compiler::find()?;
+    if matches!(compiler, Compiler::Debian(_)) {
+        return Ok(());
+    }
+    let mut command = compiler.cargo(&machine::project()?, "clippy");
+    command.args(["--quiet", "--lib", "--bin", "page", "--test", "web", "--", "-D", "warnings"]);
+    machine::run(&mut command, "the compiler has something to say about what is made for the browser")
 }
 
 fn native_tests() -> Outcome<()> {
