@@ -8,13 +8,16 @@
 //! This room knows nothing of trusses, units or trade notation, and holds no floating-point number.
 
 mod interval;
+mod lattice;
 mod laws;
+pub mod modular;
 mod point;
 mod predicates;
 mod rational;
 mod surd;
 
 pub use interval::Interval;
+pub use lattice::{Direction, Lattice, Reach, Tier};
 pub use laws::{
     archimedes, cross, cross_law_residual, pythagoras_residual, quadrance, spread, spread_between, spread_polynomial,
     triple_quad_residual, triple_spread_residual,
