@@ -213,6 +213,12 @@ impl<'a> Lattice<'a> {
         &self.points[b] - &self.points[a]
     }
 
+    /// The displacement along a pair in whole lattice steps; `None` in the tier that has none. Equal steps are equal
+    /// displacements.
+    pub fn steps_along(&self, pair: [usize; 2]) -> Option<[i64; 2]> {
+        (self.tier != Tier::Fractions).then(|| self.difference(pair))
+    }
+
     /// The spread at `at` between the lines to `a` and to `b`; `None` when either coincides with `at`.
     pub fn spread(&self, at: usize, a: usize, b: usize) -> Option<Rational> {
         if self.tier != Tier::Small {
