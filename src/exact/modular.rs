@@ -10,21 +10,32 @@ use num_traits::{One, Signed, ToPrimitive, Zero};
 /// Primes below 2^31, the Mersenne prime first. More than one, for the rare matrix that is unlucky with one of them.
 pub const PRIMES: [u32; 3] = [2_147_483_647, 2_147_483_629, 2_147_483_587];
 
-/// Arithmetic modulo one prime.
+/// Arithmetic modulo one prime 2^31 - c with a small c, without division.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub struct Field {
     prime: u64,
+    /// 2^31 - prime.
+    less: u64,
 }
+
+const HALF: u32 = 31;
 
 impl Field {
     /// Modulo one of [`PRIMES`].
     pub fn new(prime: u32) -> Field {
-        Field { prime: prime.into() }
+        debug_assert!(PRIMES.contains(&prime), "a prime just below 2^31");
+        Field { prime: prime.into(), less: (1 << HALF) - u64::from(prime) }
     }
 
     /// The prime.
     pub fn prime(self) -> u64 {
         self.prime
+    }
+
+    /// A number below 2^40 with the same residue.
+    #[inline]
+    pub fn fold(self, value: u64) -> u64 {
+        (value & ((1 << HALF) - 1)) + self.less * (value >> HALF)
     }
 
     /// The residue of any machine integer, from 0 to p - 1.
@@ -48,13 +59,14 @@ impl Field {
     /// The residue of a sum or product that was not reduced.
     #[inline]
     pub fn reduce(self, value: u64) -> u64 {
-        value % self.prime
+        let value = self.fold(self.fold(value));
+        if value >= self.prime { value - self.prime } else { value }
     }
 
     /// The product of two residues.
     #[inline]
     pub fn times(self, a: u64, b: u64) -> u64 {
-        a * b % self.prime
+        self.reduce(a * b)
     }
 
     /// The sum of two residues.
@@ -139,6 +151,17 @@ mod tests {
             let field = Field::new(prime);
             for a in [1, 2, 3, 1_000_003, u64::from(prime) - 1] {
                 assert_eq!(field.times(a, field.reciprocal(a)), 1, "{a} modulo {prime}");
+            }
+        }
+    }
+
+    #[test]
+    fn reduction_without_division_agrees_with_division() {
+        let mut scatter = Scatter::new(7);
+        for prime in PRIMES {
+            let field = Field::new(prime);
+            for value in (0..2000).map(|_| scatter.draw()).chain([0, 1, u64::MAX, prime.into(), u64::from(prime) * 2]) {
+                assert_eq!(field.reduce(value), value % u64::from(prime), "{value} modulo {prime}");
             }
         }
     }

@@ -9,6 +9,7 @@ mod places;
 mod sweep;
 
 pub(crate) use joints::{has_member, neighbours, parts};
+pub(crate) use sweep::properly_cross;
 
 use super::answers::{ClearAnswer, ClearState};
 use super::findings::{Finding, Level, Rule};
