@@ -115,6 +115,8 @@ states! {
         CriticalForm = "critical form",
         /// Judged as a free body.
         NoSupports = "no supports",
+        /// So many members are tangled that the rank was not found within the bound of work.
+        NotSettled = "not settled",
     }
 }
 

@@ -10,12 +10,24 @@
 //! randomness; the same truss gives the same report everywhere.
 
 mod answers;
+mod chains;
+mod clear;
+pub mod close;
+mod cut;
 mod findings;
+mod frame;
+mod limits;
+mod lines;
 mod placed;
+mod print;
+mod report;
+mod stands;
 
 pub use answers::{
     Answers, ClearAnswer, ClearState, CloseAnswer, CloseState, CutAnswer, JointRow, MemberRow, Motion, NeighbourSpread,
     Proof, Reading, Report, Slip, StandsAnswer, StandsState, Suspect, TrueAnswer, TrueState,
 };
 pub use findings::{Evidence, Finding, Law, Level, Mend, Question, Rule};
+pub use limits::Limits;
 pub use placed::{Placed, Places};
+pub use report::report;

@@ -9,7 +9,9 @@
 
 mod arc;
 mod interval;
+mod lattice;
 mod laws;
+pub mod modular;
 mod point;
 mod predicates;
 mod rational;
@@ -17,6 +19,7 @@ mod surd;
 
 pub use arc::{degrees_of, degrees_of_spread, nearest_degrees, nearest_degrees_of_spread, spread_of_degrees};
 pub use interval::Interval;
+pub use lattice::{Direction, Lattice, Reach, Tier};
 pub use laws::{
     archimedes, cross, cross_law_residual, pythagoras_residual, quadrance, spread, spread_between, spread_polynomial,
     triple_quad_residual, triple_spread_residual,

@@ -1,0 +1,67 @@
+//! What is cut? The schedule of members and joints, and what the shop has to know of it.
+
+mod rounding;
+mod rows;
+
+use super::answers::CutAnswer;
+use super::chains::Chain;
+use super::findings::{Finding, Level, Rule};
+use super::frame::{Frame, Tally, member_ids};
+use super::print::counted;
+use crate::exact::Rational;
+use crate::truss::Role;
+use num_traits::Zero;
+use std::collections::HashSet;
+
+/// Answers the question for a placed truss: every member and every joint has its row.
+pub(crate) fn cut(frame: &Frame, chains: &[Chain]) -> (CutAnswer, Vec<Finding>) {
+    let (members, steps) = rows::member_rows(frame);
+    let mut found = too_long(frame, &members);
+    found.extend(rounding::roundings(frame, chains, &steps));
+    let answer = CutAnswer {
+        state: counted(members.len(), "piece", "pieces"),
+        summary: summary(frame, &members, &steps),
+        joints: rows::joint_rows(frame),
+        members,
+    };
+    (answer, found)
+}
+
+/// `8 lengths, 164'-3 5/16" in all: top chord 44'-8 11/16", bottom chord 40'-0"`.
+fn summary(frame: &Frame, members: &[super::MemberRow], steps: &[Rational]) -> String {
+    let lengths: HashSet<&Rational> = members.iter().map(|row| &row.quadrance).collect();
+    let total = |role: Option<Role>| {
+        let of_role = (0..members.len()).filter(|&m| role.is_none_or(|role| frame.role(m) == role));
+        of_role.fold(Rational::zero(), |sum, m| sum + &steps[m])
+    };
+    if members.is_empty() {
+        return "no members".into();
+    }
+    let all = format!("{}, {} in all", counted(lengths.len(), "length", "lengths"), frame.print.length(&total(None)));
+    let roles: Vec<String> = Role::ALL
+        .into_iter()
+        .map(|role| (role, total(Some(role))))
+        .filter(|(_, length)| !length.is_zero())
+        .map(|(role, length)| format!("{} {}", role.name(), frame.print.length(&length)))
+        .collect();
+    if roles.len() > 1 { format!("{all}: {}", roles.join(", ")) } else { all }
+}
+
+/// Members longer than the longest piece of the limits.
+fn too_long(frame: &Frame, members: &[super::MemberRow]) -> Vec<Finding> {
+    let limit = frame.limits.longest_piece_in(frame.truss.unit);
+    let square = &limit * &limit;
+    let mut tally = Tally::new(Rule::TooLong, Level::Note, frame.limits);
+    for (member, row) in members.iter().enumerate().filter(|(_, row)| row.quadrance > square) {
+        tally.add(|rule, level| {
+            let mark = frame.print.member(member);
+            let text = format!("{mark} is {} long, more than {}.", row.length, frame.print.length(&limit));
+            Finding::new(rule, level, text)
+                .members(member_ids([member]))
+                .value(format!("quadrance of {mark}"), frame.print.area(&row.quadrance))
+                .value("square of the limit", frame.print.area(&square))
+                .words("The limit is adjustable; 48 ft is the semitrailer length that every state of the US admits (23 CFR 658).")
+        });
+    }
+    tally.finish()
+}

@@ -1,0 +1,75 @@
+//! The rows of the schedule. Equal members are worked out once.
+
+use super::super::answers::{JointRow, MemberRow, NeighbourSpread};
+use super::super::clear::neighbours;
+use super::super::frame::{Frame, Spoke};
+use crate::exact::{Rational, Surd, Vector};
+use crate::truss::{JointId, MemberId};
+use num_traits::{Signed, Zero};
+use std::collections::HashMap;
+
+/// One row for each member, and the printed lengths as numbers in the sheet's unit.
+pub(crate) fn member_rows(frame: &Frame) -> (Vec<MemberRow>, Vec<Rational>) {
+    let mut known: HashMap<[i64; 2], (MemberRow, Rational)> = HashMap::new();
+    let row = |member: usize| {
+        let Some(steps) = frame.lattice.steps_along(frame.ends[member]) else { return member_row(frame, member) };
+        let (row, length) = known.entry(steps).or_insert_with(|| member_row(frame, member));
+        (MemberRow { member: MemberId::new(member), ..row.clone() }, length.clone())
+    };
+    (0..frame.ends.len()).map(row).unzip()
+}
+
+fn member_row(frame: &Frame, member: usize) -> (MemberRow, Rational) {
+    let v = frame.lattice.displacement(frame.ends[member]);
+    let quadrance = v.quadrance();
+    let surd = Surd::of_quadrance(&quadrance);
+    let (length, exact) = surd.as_ref().map(|surd| frame.print.surd(surd)).unwrap_or_default();
+    let rounded = surd.and_then(|surd| surd.nearest(frame.print.step()));
+    let number = rounded.map(|r| Rational::from_integer(r.steps) * frame.print.step()).unwrap_or_default();
+    let upright = Vector { x: v.x.abs(), y: v.y.abs() };
+    let level = Vector { x: crate::exact::whole(1), y: Rational::zero() };
+    let row = MemberRow {
+        member: MemberId::new(member),
+        bevel: frame.print.bevel(&v.x, &v.y),
+        degrees: if v.is_null() { String::new() } else { frame.print.degrees(&level, &upright) },
+        run: v.x,
+        rise: v.y,
+        quadrance,
+        length,
+        exact,
+    };
+    (row, number)
+}
+
+/// Two displacements in lattice steps.
+type Corner = [[i64; 2]; 2];
+
+/// One row for each joint.
+pub(crate) fn joint_rows(frame: &Frame) -> Vec<JointRow> {
+    let mut known: HashMap<Corner, (Rational, String)> = HashMap::new();
+    let mut row = |joint: usize| {
+        let spreads = neighbours(frame, joint).map(|(s, t)| neighbour_spread(frame, joint, s, t, &mut known)).collect();
+        JointRow { joint: JointId::new(joint), point: frame.lattice.point(joint).clone(), spreads }
+    };
+    (0..frame.joint_count()).map(&mut row).collect()
+}
+
+fn neighbour_spread(
+    frame: &Frame,
+    at: usize,
+    s: Spoke,
+    t: Spoke,
+    known: &mut HashMap<Corner, (Rational, String)>,
+) -> NeighbourSpread {
+    let pairs = [[at, s.far as usize], [at, t.far as usize]];
+    let work_out = || {
+        let [v, w] = pairs.map(|pair| frame.lattice.displacement(pair));
+        let spread = frame.lattice.spread(at, pairs[0][1], pairs[1][1]).unwrap_or_default();
+        (spread, frame.print.degrees(&v, &w))
+    };
+    let (spread, degrees) = match pairs.map(|pair| frame.lattice.steps_along(pair)) {
+        [Some(v), Some(w)] => known.entry([v, w]).or_insert_with(work_out).clone(),
+        _ => work_out(),
+    };
+    NeighbourSpread { between: [MemberId(s.member), MemberId(t.member)], spread, degrees }
+}

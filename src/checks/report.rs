@@ -1,0 +1,40 @@
+//! All five questions, put together.
+
+use super::answers::{Answers, Report};
+use super::chains::chains;
+use super::close::close;
+use super::findings::Finding;
+use super::frame::Frame;
+use super::limits::Limits;
+use super::placed::Placed;
+use super::{clear, cut, lines, stands};
+use crate::truss::Truss;
+
+/// Asks the five questions of a truss.
+///
+/// The geometric questions are asked of the layout where closing proved one, of the joints as given otherwise. The
+/// truss is taken to have no [`Truss::problems`]; one that has them may be answered wrongly, but a joint that is not
+/// there gives an empty report instead of an error.
+pub fn report(truss: &Truss, limits: &Limits) -> Report {
+    let (close, mut found) = close(truss, limits);
+    let placed = match &close.layout {
+        Some(layout) if layout.len() == truss.joints.len() => Placed::at_layout(truss, layout.clone()),
+        _ => Placed::as_given(truss),
+    };
+    let frame = Frame::new(&placed, limits);
+    let chains = chains(&frame);
+    let (lines, lines_found) = lines::lines(&frame, &chains);
+    let (clear, clear_found) = clear::clear(&frame);
+    let (stands, stands_found) = stands::stands(&frame);
+    let (cut, cut_found) = cut::cut(&frame, &chains);
+    drop(frame);
+    found.extend([lines_found, clear_found, stands_found, cut_found].into_iter().flatten());
+    sort(&mut found);
+    let answers = Answers { close, lines, clear, stands, cut };
+    Report { answers, findings: found, places: placed.places, points: placed.points }
+}
+
+/// By question, worst first, then by rule; within a rule as they were found, which is the order of the lists.
+fn sort(found: &mut [Finding]) {
+    found.sort_by_key(|finding| (finding.rule.question(), finding.level, finding.rule));
+}
