@@ -10,6 +10,7 @@
 //! randomness; the same truss gives the same report everywhere.
 
 mod answers;
+mod close;
 mod findings;
 mod placed;
 
@@ -17,5 +18,6 @@ pub use answers::{
     Answers, ClearAnswer, ClearState, CloseAnswer, CloseState, CutAnswer, JointRow, MemberRow, Motion, NeighbourSpread,
     Proof, Reading, Report, Slip, StandsAnswer, StandsState, Suspect, TrueAnswer, TrueState,
 };
+pub use close::{Effort, Progress, Stage, close, close_watched};
 pub use findings::{Evidence, Finding, Law, Level, Mend, Question, Rule};
 pub use placed::{Placed, Places};
