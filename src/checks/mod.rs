@@ -12,7 +12,7 @@
 mod answers;
 mod chains;
 mod clear;
-pub mod close;
+mod close;
 mod cut;
 mod findings;
 mod frame;
@@ -27,6 +27,7 @@ pub use answers::{
     Answers, ClearAnswer, ClearState, CloseAnswer, CloseState, CutAnswer, JointRow, MemberRow, Motion, NeighbourSpread,
     Proof, Reading, Report, Slip, StandsAnswer, StandsState, Suspect, TrueAnswer, TrueState,
 };
+pub use close::{Effort, Progress, Stage, close, close_watched};
 pub use findings::{Evidence, Finding, Law, Level, Mend, Question, Rule};
 pub use limits::Limits;
 pub use placed::{Placed, Places};

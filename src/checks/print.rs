@@ -63,7 +63,8 @@ impl<'a> Print<'a> {
 
     /// The smaller leg in 12 of the larger (metric: in 1000), to a sixteenth (metric: to 1); with its sense.
     pub(crate) fn bevel(&self, run: &Rational, rise: &Rational) -> String {
-        let (base, step) = if self.truss.unit.is_imperial() { (whole(12), ratio(1, 16)) } else { (whole(1000), whole(1)) };
+        let (base, step) =
+            if self.truss.unit.is_imperial() { (whole(12), ratio(1, 16)) } else { (whole(1000), whole(1)) };
         let (small, large) = if run.abs() < rise.abs() { (run.abs(), rise.abs()) } else { (rise.abs(), run.abs()) };
         if large.is_zero() {
             return String::new();

@@ -2,7 +2,7 @@
 
 use super::answers::{Answers, Report};
 use super::chains::chains;
-use super::close::close;
+use super::close::{Effort, close};
 use super::findings::Finding;
 use super::frame::Frame;
 use super::limits::Limits;
@@ -16,7 +16,7 @@ use crate::truss::Truss;
 /// truss is taken to have no [`Truss::problems`]; one that has them may be answered wrongly, but a joint that is not
 /// there gives an empty report instead of an error.
 pub fn report(truss: &Truss, limits: &Limits) -> Report {
-    let (close, mut found) = close(truss, limits);
+    let (close, mut found) = close(truss, &Effort::default());
     let placed = match &close.layout {
         Some(layout) if layout.len() == truss.joints.len() => Placed::at_layout(truss, layout.clone()),
         _ => Placed::as_given(truss),

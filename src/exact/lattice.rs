@@ -94,9 +94,8 @@ impl<'a> Lattice<'a> {
         let steps = Rational::from_integer(BigInt::from(WIDE_SPAN - 2));
         let scale = if span.is_zero() { Rational::one() } else { steps / span };
         let place = |value: &Rational, low: &Rational| ((value - low) * &scale).floor().to_integer();
-        let coarse = |p: &Point| {
-            [place(&p.x, &low.x), place(&p.y, &low.y)].map(|c| c.to_i64().unwrap_or(0).clamp(0, WIDE_SPAN))
-        };
+        let coarse =
+            |p: &Point| [place(&p.x, &low.x), place(&p.y, &low.y)].map(|c| c.to_i64().unwrap_or(0).clamp(0, WIDE_SPAN));
         Lattice { coarse: points.iter().map(coarse).collect(), points, scale, tier: Tier::Fractions }
     }
 

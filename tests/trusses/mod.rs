@@ -109,7 +109,8 @@ pub(crate) fn lattice(side: usize) -> Truss {
     for x in 0..=side {
         for y in 0..=side {
             // A little out of the straight, so that nothing is degenerate.
-            places.push((100 * x as i64 + ((x * 7 + y * 13) % 11) as i64, 100 * y as i64 + ((x * 5 + y * 3) % 7) as i64));
+            places
+                .push((100 * x as i64 + ((x * 7 + y * 13) % 11) as i64, 100 * y as i64 + ((x * 5 + y * 3) % 7) as i64));
             if x < side {
                 members.push((at(x, y), at(x + 1, y)));
             }

@@ -78,7 +78,11 @@ fn curve(b: Box4) -> u64 {
     let middle = |low: i64, high: i64| low / 2 + high / 2;
     let (x, y) = (middle(b[0], b[2]), middle(b[1], b[3]));
     // Small lattices stay below 2^31 and are not shifted; the choice is by size, so that the curve is the same for all.
-    if x < 1 << 31 && y < 1 << 31 { weave(x) | (weave(y) << 1) } else { weave(x >> 29) | (weave(y >> 29) << 1) | (1 << 63) }
+    if x < 1 << 31 && y < 1 << 31 {
+        weave(x) | (weave(y) << 1)
+    } else {
+        weave(x >> 29) | (weave(y >> 29) << 1) | (1 << 63)
+    }
 }
 
 #[cfg(test)]

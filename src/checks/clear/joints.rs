@@ -39,7 +39,11 @@ pub(crate) fn acute_gaps(frame: &Frame) -> Vec<Gap> {
             let (s, t) = ([at, s.far as usize], [at, t.far as usize]);
             frame.lattice.facing(s, t) == Ordering::Greater && frame.lattice.turn(s, t) == Ordering::Greater
         };
-        gaps.extend(neighbours(frame, at).filter(|(s, t)| acute(s, t)).map(|(first, second)| Gap { at, first, second }));
+        gaps.extend(neighbours(frame, at).filter(|(s, t)| acute(s, t)).map(|(first, second)| Gap {
+            at,
+            first,
+            second,
+        }));
     }
     gaps
 }
@@ -169,9 +173,11 @@ fn apart(frame: &Frame, parts: &[usize], roots: &[usize], sizes: &[usize]) -> Ve
                 frame.print.joints(joints.iter().copied()),
                 if sizes[part] == 1 { "is" } else { "are" }
             );
-            Finding::new(rule, level, text)
-                .joints(joint_ids(joints.iter().copied()))
-                .words(format!("{} in this part, {} in the greatest.", counted(sizes[part], "joint", "joints"), sizes[main]))
+            Finding::new(rule, level, text).joints(joint_ids(joints.iter().copied())).words(format!(
+                "{} in this part, {} in the greatest.",
+                counted(sizes[part], "joint", "joints"),
+                sizes[main]
+            ))
         });
     }
     tally.finish()

@@ -69,7 +69,8 @@ fn meeting(frame: &Frame, s: usize, t: usize, inside_s: &[u32]) -> Option<Meetin
         return (!at_joint).then_some(Meeting::Crossing);
     }
     let on_line = |joint| frame.lattice.orientation(a[0], a[1], joint) == Orientation::On;
-    let share = |p: [usize; 2], q: [usize; 2]| frame.rank[p[0]].max(frame.rank[q[0]]) < frame.rank[p[1]].min(frame.rank[q[1]]);
+    let share =
+        |p: [usize; 2], q: [usize; 2]| frame.rank[p[0]].max(frame.rank[q[0]]) < frame.rank[p[1]].min(frame.rank[q[1]]);
     (share(a, b) && on_line(b[0]) && on_line(b[1])).then_some(Meeting::Overlap)
 }
 
@@ -160,7 +161,10 @@ fn crossing(frame: &Frame, s: usize, t: usize, rule: Rule, level: Level) -> Find
         .value("they cross at", print.place(&point))
         .value(format!("quadrance from {}", print.joint(near)), print.area(&quadrance))
         .formula(Law::Orientation, sides)
-        .mend("Put a joint where they cross, or let one of them pass behind the other.", Some(joined(frame, s, t, &point)))
+        .mend(
+            "Put a joint where they cross, or let one of them pass behind the other.",
+            Some(joined(frame, s, t, &point)),
+        )
         .point(point)
 }
 
@@ -251,8 +255,5 @@ fn divided(frame: &Frame, joint: usize, member: usize) -> Edit {
     let old = &frame.truss.members[member];
     let at = JointId::new(joint);
     let rest = Member { mark: frame.free_member_mark(old.role).into(), from: at, to: old.to, role: old.role };
-    Edit::All(vec![
-        Edit::SetMember(MemberId::new(member), Member { to: at, ..old.clone() }),
-        Edit::AddMember(rest),
-    ])
+    Edit::All(vec![Edit::SetMember(MemberId::new(member), Member { to: at, ..old.clone() }), Edit::AddMember(rest)])
 }

@@ -51,7 +51,12 @@ fn near_joints(frame: &Frame, tally: &mut Tally, left: &mut usize) {
 
 fn two_joints(frame: &Frame, a: usize, b: usize, quadrance: &Rational, rule: Rule, level: Level) -> Finding {
     let v = frame.lattice.displacement([a, b]);
-    let text = format!("{} and {} stand only {} apart.", frame.print.joint(a), frame.print.joint(b), frame.print.root(quadrance));
+    let text = format!(
+        "{} and {} stand only {} apart.",
+        frame.print.joint(a),
+        frame.print.joint(b),
+        frame.print.root(quadrance)
+    );
     Finding::new(rule, level, text)
         .joints(joint_ids([a, b]))
         .formula(Law::Quadrance, format!("({})² + ({})² = {quadrance}", v.x, v.y))
@@ -64,7 +69,8 @@ fn near_members(frame: &Frame, boxes: &Boxes, tally: &mut Tally, left: &mut usiz
         let mut near: Vec<u32> = Vec::new();
         boxes.touching([x - reach, y - reach, x + reach, y + reach], |member| {
             *left = left.saturating_sub(1);
-            if !is_part(frame, joint, member as usize) && !frame.lattice.is_beyond(joint, frame.ends[member as usize], &frame.reach)
+            if !is_part(frame, joint, member as usize)
+                && !frame.lattice.is_beyond(joint, frame.ends[member as usize], &frame.reach)
             {
                 near.push(member);
             }
@@ -103,7 +109,14 @@ fn offset_inside(frame: &Frame, joint: usize, member: usize) -> Option<Rational>
     (along.is_positive() && along < whole).then(|| &cross * &cross / whole)
 }
 
-fn joint_and_member(frame: &Frame, joint: usize, member: usize, square: &Rational, rule: Rule, level: Level) -> Finding {
+fn joint_and_member(
+    frame: &Frame,
+    joint: usize,
+    member: usize,
+    square: &Rational,
+    rule: Rule,
+    level: Level,
+) -> Finding {
     let [a, b] = frame.ends[member];
     let (v, w) = (frame.lattice.displacement([a, b]), frame.lattice.displacement([a, joint]));
     let (mark, member_mark) = (frame.print.joint(joint), frame.print.member(member));

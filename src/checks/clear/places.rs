@@ -62,7 +62,8 @@ pub(crate) fn doubled(frame: &Frame) -> (Vec<u32>, Vec<Finding>) {
 fn doubled_finding(frame: &Frame, group: &[u32], rule: Rule, level: Level) -> Finding {
     let members = || group.iter().take(frame.limits.most_findings).map(|&member| member as usize);
     let [a, b] = frame.ends[group[0] as usize];
-    let text = format!("{} all join {} and {}.", frame.print.members(members()), frame.print.joint(a), frame.print.joint(b));
+    let text =
+        format!("{} all join {} and {}.", frame.print.members(members()), frame.print.joint(a), frame.print.joint(b));
     let text = if group.len() == 2 { text.replace(" all join ", " both join ") } else { text };
     let spare: Vec<MemberId> = group[1..].iter().map(|&member| MemberId(member)).collect();
     let edit = Edit::Remove(Selection { members: spare, ..Selection::default() });

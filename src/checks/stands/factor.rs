@@ -321,7 +321,8 @@ impl<'m> Factor<'m> {
         self.inner[row] = field.times(yx, rx);
         let yy = field.plus(yy, field.minus(field.times(yx, self.inner[row])));
         self.reciprocal[row] = [rx, field.reciprocal(yy)];
-        self.free.extend([xx == 0, yy == 0].into_iter().enumerate().filter(|(_, is)| *is).map(|(axis, _)| 2 * row + axis));
+        self.free
+            .extend([xx == 0, yy == 0].into_iter().enumerate().filter(|(_, is)| *is).map(|(axis, _)| 2 * row + axis));
         Ok(())
     }
 

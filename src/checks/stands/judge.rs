@@ -69,14 +69,20 @@ pub(crate) fn judge(frame: &Frame, matrix: &Matrix) -> Result<Judged, TooMuch> {
     let (factor, motion) = best.ok_or(TooMuch)?;
     let rank = factor.rank() - matrix.ground;
     let most = if factor.free.is_empty() { None } else { most_rank(matrix, work) };
-    let is_generic = !factor.free.is_empty() && most.is_none_or(|most| most >= rank + factor.free.len()) && generic(matrix, &pattern);
+    let is_generic = !factor.free.is_empty()
+        && most.is_none_or(|most| most >= rank + factor.free.len())
+        && generic(matrix, &pattern);
     Ok(Judged {
         rank,
         ways: factor.free.len(),
         certainty: certainty(matrix, &factor, rank, most, work),
         is_generic,
         motion,
-        stressed: if matrix.rows.len() > factor.rank() { stressed(matrix, &factor) } else { vec![false; matrix.rows.len()] },
+        stressed: if matrix.rows.len() > factor.rank() {
+            stressed(matrix, &factor)
+        } else {
+            vec![false; matrix.rows.len()]
+        },
     })
 }
 

@@ -23,12 +23,23 @@ const MOST_DIGITS: usize = 1024;
 /// The exact motion of a free column, verified; `None` when the work is beyond the bound or the prime was unlucky.
 pub(crate) fn lift(matrix: &Matrix, factor: &Factor, free: usize, most_work: usize) -> Option<Velocities> {
     let is_short = matrix.rows.iter().all(|row| matches!(row.direction, Direction::Short(_)));
-    if is_short { lift_in::<i128>(matrix, factor, free, most_work) } else { lift_in::<BigInt>(matrix, factor, free, most_work) }
+    if is_short {
+        lift_in::<i128>(matrix, factor, free, most_work)
+    } else {
+        lift_in::<BigInt>(matrix, factor, free, most_work)
+    }
 }
 
 /// Whole numbers that residuals are kept in.
 trait Whole:
-    Clone + Zero + From<i64> + Add<Output = Self> + Sub<Output = Self> + Mul<Output = Self> + Div<Output = Self> + Rem<Output = Self>
+    Clone
+    + Zero
+    + From<i64>
+    + Add<Output = Self>
+    + Sub<Output = Self>
+    + Mul<Output = Self>
+    + Div<Output = Self>
+    + Rem<Output = Self>
 {
     fn residue(&self, factor: &Factor) -> u64;
     fn parts(direction: &Direction) -> [Self; 2];

@@ -74,7 +74,8 @@ impl Matrix {
     /// The residues as they would be with the joints anywhere, the holds in their own directions.
     pub(crate) fn scattered_residues(&self, field: Field, seed: u64) -> Vec<[u64; 2]> {
         let mut scatter = Scatter::new(seed);
-        let places: Vec<[u64; 2]> = self.joints.iter().map(|_| [scatter.residue(field), scatter.residue(field)]).collect();
+        let places: Vec<[u64; 2]> =
+            self.joints.iter().map(|_| [scatter.residue(field), scatter.residue(field)]).collect();
         let between = |[a, b]: [u32; 2]| {
             let (p, q) = (places[a as usize], places[b as usize]);
             [field.plus(p[0], field.minus(q[0])), field.plus(p[1], field.minus(q[1]))]

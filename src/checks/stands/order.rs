@@ -81,7 +81,8 @@ impl Hasher for PairHasher {
     }
 
     fn write_u64(&mut self, value: u64) {
-        self.0 = (self.0 ^ value).wrapping_mul(0x9e37_79b9_7f4a_7c15).rotate_left(23).wrapping_mul(0xbf58_476d_1ce4_e5b9);
+        self.0 =
+            (self.0 ^ value).wrapping_mul(0x9e37_79b9_7f4a_7c15).rotate_left(23).wrapping_mul(0xbf58_476d_1ce4_e5b9);
     }
 }
 

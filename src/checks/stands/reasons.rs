@@ -26,7 +26,9 @@ pub(crate) fn loose_reason(frame: &Frame, matrix: &Matrix, velocities: &Velociti
         let mark = frame.print.joint(joint);
         match around {
             [] => {}
-            [only] => return Some(format!(" Only {} reaches {mark}: it swings.", frame.print.member(only.member as usize))),
+            [only] => {
+                return Some(format!(" Only {} reaches {mark}: it swings.", frame.print.member(only.member as usize)));
+            }
             [first, ..] if all_in_line(frame, joint) => {
                 let _ = first;
                 return Some(format!(" All members at {mark} lie in one line: nothing stops it square to them."));
@@ -54,7 +56,9 @@ pub(crate) fn place_for_member(frame: &Frame, matrix: &Matrix, velocities: &Velo
         let near = frame.around(a).iter().take(LOOKED_AT).map(|spoke| spoke.far as usize);
         let beyond: BTreeSet<usize> =
             near.flat_map(|b| frame.around(b).iter().take(LOOKED_AT)).map(|spoke| spoke.far as usize).collect();
-        pairs.extend(beyond.into_iter().filter(|&b| would_stop(frame, velocities, &column, a, b)).map(|b| [a.min(b), a.max(b)]));
+        pairs.extend(
+            beyond.into_iter().filter(|&b| would_stop(frame, velocities, &column, a, b)).map(|b| [a.min(b), a.max(b)]),
+        );
     }
     pairs.sort_unstable();
     pairs.dedup();
@@ -85,7 +89,12 @@ fn is_open(frame: &Frame, pair: [usize; 2]) -> bool {
 }
 
 /// Why a critical form moves, and the members that make it so.
-pub(crate) fn critical_reason(frame: &Frame, matrix: &Matrix, judged: &Judged, stressed: &[usize]) -> (String, Vec<usize>) {
+pub(crate) fn critical_reason(
+    frame: &Frame,
+    matrix: &Matrix,
+    judged: &Judged,
+    stressed: &[usize],
+) -> (String, Vec<usize>) {
     if let Some(joint) = judged.motion.as_ref().and_then(|velocities| joint_in_line(frame, matrix, velocities)) {
         let members = frame.around(joint).iter().map(|spoke| spoke.member as usize).collect();
         let mark = frame.print.joint(joint);
@@ -103,7 +112,8 @@ pub(crate) fn critical_reason(frame: &Frame, matrix: &Matrix, judged: &Judged, s
 
 /// A moving joint without a support whose members all lie in one line.
 fn joint_in_line(frame: &Frame, matrix: &Matrix, velocities: &Velocities) -> Option<usize> {
-    let moving = (0..matrix.joints.len()).filter(|&pair| velocities.moves(pair)).map(|pair| matrix.joints[pair] as usize);
+    let moving =
+        (0..matrix.joints.len()).filter(|&pair| velocities.moves(pair)).map(|pair| matrix.joints[pair] as usize);
     moving.into_iter().find(|&joint| !frame.is_supported(joint) && all_in_line(frame, joint))
 }
 
@@ -122,7 +132,8 @@ fn nine_members(frame: &Frame, members: &[usize]) -> Option<String> {
     }
     let joints: Vec<usize> = near.keys().copied().collect();
     let joined = |a: usize, b: usize| near.get(&a).is_some_and(|list| list.contains(&b));
-    let triangle: Vec<usize> = joints.iter().copied().filter(|&a| near[&a].iter().any(|&b| near[&a].iter().any(|&c| joined(b, c)))).collect();
+    let triangle: Vec<usize> =
+        joints.iter().copied().filter(|&a| near[&a].iter().any(|&b| near[&a].iter().any(|&c| joined(b, c)))).collect();
     match triangle.len() {
         0 => on_conic(frame, &joints),
         6 => connecting(frame, &joints, &joined),
@@ -161,7 +172,10 @@ fn connecting(frame: &Frame, joints: &[usize], joined: &dyn Fn(usize, usize) -> 
     let from_third = &point - frame.lattice.point(third[0]);
     let meets = frame.lattice.displacement(third).cross(&from_third).is_zero();
     meets.then(|| {
-        format!("The lines of the three members that connect two triangles, {names}, meet in {}.", frame.print.place(&point))
+        format!(
+            "The lines of the three members that connect two triangles, {names}, meet in {}.",
+            frame.print.place(&point)
+        )
     })
 }
 

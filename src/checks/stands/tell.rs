@@ -135,7 +135,8 @@ fn mechanism(frame: &Frame, matrix: &Matrix, judged: &Judged, unknowns: usize, w
     let moving = judged.motion.as_ref().map(|velocities| moving_joints(matrix, velocities)).unwrap_or_default();
     let (verb, who) = (if moving.len() == 1 { "moves" } else { "move" }, frame.print.joints(moving.iter().copied()));
     let moves = if moving.is_empty() { String::new() } else { format!(" {who} {verb}.") };
-    let reason = judged.motion.as_ref().and_then(|velocities| loose_reason(frame, matrix, velocities)).unwrap_or_default();
+    let reason =
+        judged.motion.as_ref().and_then(|velocities| loose_reason(frame, matrix, velocities)).unwrap_or_default();
     let text = format!("{missing} missing.{moves}{reason}");
     let finding = Finding::new(Rule::Mechanism, Level::Fault, text);
     let finding = with_motion(frame, matrix, judged, rank_evidence(finding, matrix, judged, unknowns));
@@ -178,14 +179,17 @@ fn with_motion(frame: &Frame, matrix: &Matrix, judged: &Judged, finding: Finding
     let pairs = matrix.joints.iter().enumerate().filter(|(pair, _)| velocities.moves(*pair));
     for (pair, &joint) in pairs.take(WRITTEN) {
         let v = velocities.vector(pair);
-        finding = finding.value(format!("velocity of {}", frame.print.joint(joint as usize)), format!("({}, {})", v.x, v.y));
+        finding =
+            finding.value(format!("velocity of {}", frame.print.joint(joint as usize)), format!("({}, {})", v.x, v.y));
     }
     if judged.ways > 1 { finding.words(format!("It is one of {} independent motions.", judged.ways)) } else { finding }
 }
 
 fn stressed_members(matrix: &Matrix, judged: &Judged) -> Vec<usize> {
     let members = matrix.rows.iter().zip(&judged.stressed).filter(|(_, stressed)| **stressed);
-    members.filter_map(|(row, _)| if let Source::Member(member) = row.source { Some(member as usize) } else { None }).collect()
+    members
+        .filter_map(|(row, _)| if let Source::Member(member) = row.source { Some(member as usize) } else { None })
+        .collect()
 }
 
 fn spare(frame: &Frame, matrix: &Matrix, judged: &Judged) -> Option<Finding> {

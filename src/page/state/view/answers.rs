@@ -132,6 +132,7 @@ fn words(report: &Report, question: Question) -> (String, String, Sign) {
                 StandsState::Mechanism => ("It moves", Sign::Fault),
                 StandsState::CriticalForm => ("Critical form", Sign::Fault),
                 StandsState::NoSupports => ("No supports", worst(Sign::Note)),
+                StandsState::NotSettled => ("Not settled", Sign::Caution),
             };
             (answer.into(), answers.stands.summary.clone(), sign)
         }

@@ -217,6 +217,7 @@ fn sentence(checked: &Checked, question: Question) -> String {
                 "Enough members, well placed in number, yet this very geometry lets it move.".into()
             }
             StandsState::NoSupports => "Nothing holds it, so it is judged as a free body.".into(),
+            StandsState::NotSettled => "It was not settled within the bound of work.".into(),
         },
         Question::Cut => "Lengths along the working lines, each rounded once and correctly.".into(),
     }

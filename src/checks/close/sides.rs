@@ -1,0 +1,82 @@
+//! What the sketch says beside the figures: on which side of the line between its neighbours a loose joint lies.
+//!
+//! Three joints that are linked two by two (by a member, a length figure, or both being set) make a triangle; with a
+//! loose corner, its sketched orientation is a side condition, so that its mirror image is no solution. A loose joint in
+//! no such triangle takes the line between its first two neighbours instead. A triangle sketched flatter than one in
+//! [`FLATNESS`] says nothing: a rough sketch may well have that wrong.
+
+use crate::exact::{Orientation, Rational, orientation, quadrance, whole};
+use crate::truss::{FigureKind, JointId, Truss};
+use std::collections::BTreeSet;
+
+/// A triangle whose height is less than its longest side over this says nothing about sides.
+const FLATNESS: u32 = 8;
+/// Joints with more neighbours than this are not searched for triangles; no drawing has them.
+const MOST_NEIGHBOURS: usize = 64;
+
+/// Three joints and the way round they were sketched.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub(crate) struct Side {
+    /// The corners.
+    pub joints: [JointId; 3],
+    /// The side of the line from the first to the second on which the third lies; never `On`.
+    pub orientation: Orientation,
+}
+
+/// Every side that the sketch tells, in the order of the joints.
+pub(crate) fn sides(truss: &Truss) -> Vec<Side> {
+    let links = links(truss);
+    let mut found = Vec::new();
+    for a in (0..truss.joints.len()).map(JointId::new) {
+        let neighbours: Vec<JointId> = links[a.index()].iter().copied().take(MOST_NEIGHBOURS).collect();
+        let triangles = triangles_at(truss, &links, a, &neighbours);
+        let lone = triangles.is_empty() && truss.joint(a).loose && neighbours.len() >= 2;
+        if lone {
+            found.extend(sketched(truss, [neighbours[0], neighbours[1], a]));
+        }
+        // Each triangle once, at its first corner.
+        found.extend(triangles.into_iter().filter(|t| t[0] < t[1]).filter_map(|t| sketched(truss, t)));
+    }
+    found
+}
+
+/// Triangles with this corner first and a loose corner; the other two in ascending order.
+fn triangles_at(truss: &Truss, links: &[BTreeSet<JointId>], a: JointId, neighbours: &[JointId]) -> Vec<[JointId; 3]> {
+    let is_set = |id: JointId| !truss.joint(id).loose;
+    let mut found = Vec::new();
+    for (i, &b) in neighbours.iter().enumerate() {
+        for &c in &neighbours[i + 1..] {
+            let closed = links[b.index()].contains(&c) || (is_set(b) && is_set(c));
+            if closed && !(is_set(a) && is_set(b) && is_set(c)) {
+                found.push([a, b, c]);
+            }
+        }
+    }
+    found
+}
+
+/// Joints that are tied by a member or a length figure.
+fn links(truss: &Truss) -> Vec<BTreeSet<JointId>> {
+    let mut links = vec![BTreeSet::new(); truss.joints.len()];
+    let members = truss.members.iter().map(|member| member.ends());
+    let lengths = truss.figures.iter().filter_map(|figure| match figure.kind {
+        FigureKind::Length { from, to, .. } => Some([from, to]),
+        _ => None,
+    });
+    for [a, b] in members.chain(lengths).filter(|[a, b]| a != b) {
+        links[a.index()].insert(b);
+        links[b.index()].insert(a);
+    }
+    links
+}
+
+/// The sketched side of the third joint, unless it is too near the line to say.
+fn sketched(truss: &Truss, joints: [JointId; 3]) -> Option<Side> {
+    let [a, b, c] = joints.map(|id| truss.joint(id).point());
+    let longest: Rational = quadrance(&a, &b).max(quadrance(&b, &c)).max(quadrance(&a, &c));
+    let cross = (&b - &a).cross(&(&c - &a));
+    // height = |cross| / longest side, so height·FLATNESS < longest side is |cross|·FLATNESS < longest quadrance.
+    let clear = num_traits::Signed::abs(&cross) * whole(FLATNESS) >= longest;
+    let orientation = orientation(&a, &b, &c);
+    (clear && orientation != Orientation::On).then_some(Side { joints, orientation })
+}
