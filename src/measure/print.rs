@@ -1,6 +1,6 @@
 //! Printing: lengths, bevels and degrees as the trade writes them, correctly rounded.
 
-use super::Unit;
+use super::{Unit, Written};
 use crate::exact::{Rational, Surd, Vector, nearest_degrees, nearest_multiple, ratio, whole};
 use num_bigint::BigInt;
 use num_integer::Integer;
@@ -88,6 +88,17 @@ impl Sheet {
             feet_and_inches(&(value * self.unit.in_units_of(Unit::In)))
         } else {
             exact_number(value)
+        }
+    }
+
+    /// A length as it would be typed on this sheet, with nothing rounded.
+    pub fn written(&self, value: &Rational) -> Written {
+        let text = self.exact_words(value);
+        // A value whose text is too long for the grammar is kept as a plain fraction.
+        if super::parse_length(&text, self.unit).as_ref() == Ok(value) {
+            Written { text, value: value.clone() }
+        } else {
+            Written::plain(value.clone())
         }
     }
 

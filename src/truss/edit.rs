@@ -4,7 +4,7 @@ use super::ids::{FigureId, JointId, MemberId, SupportId};
 use super::model::{Figure, FigureKind, Joint, Member, Role, Support, SupportKind, Truss};
 use super::validate::mark_problem;
 use crate::exact::Point;
-use crate::measure::{Unit, Written};
+use crate::measure::{Sheet, Unit, Written};
 use serde::{Deserialize, Serialize};
 use thiserror::Error;
 
@@ -131,6 +131,11 @@ impl Truss {
     }
 
     fn move_joints(&mut self, moves: &[(JointId, Point)]) -> Result<(), EditError> {
+        let (unit, step) = (self.unit, self.step.value.clone());
+        let moved = |old: &Written, value: &crate::exact::Rational| match old.value == *value {
+            true => old.clone(),
+            false => Sheet::of(unit, &step).written(value),
+        };
         for (id, point) in moves {
             let joint = self.joints.get_mut(id.index()).ok_or_else(|| missing("joint"))?;
             joint.x = moved(&joint.x, &point.x);
@@ -239,7 +244,9 @@ impl Truss {
             return;
         }
         let factor = self.unit.in_units_of(unit);
-        let convert = |written: &mut Written| *written = Written::plain(&written.value * &factor);
+        let convert = |written: &mut Written| {
+            *written = Sheet::of(unit, &crate::exact::whole(0)).written(&(&written.value * &factor));
+        };
         convert(&mut self.step);
         for joint in &mut self.joints {
             convert(&mut joint.x);
@@ -293,10 +300,6 @@ fn free_mark<'a>(letter: &str, used: impl Iterator<Item = &'a str>) -> String {
     let numbers = used.filter_map(|mark| mark.strip_prefix(letter)?.parse::<u32>().ok());
     let next = numbers.max().map_or(1, |greatest| greatest.saturating_add(1));
     format!("{letter}{next}")
-}
-
-fn moved(old: &Written, value: &crate::exact::Rational) -> Written {
-    if old.value == *value { old.clone() } else { Written::plain(value.clone()) }
 }
 
 fn keep(count: usize, gone: impl Iterator<Item = usize>) -> Vec<bool> {

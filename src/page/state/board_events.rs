@@ -108,7 +108,7 @@ fn begin(state: &mut State, id: i32, from: Pixel, on: Option<Thing>, extend: boo
         }
         (Pen::Down, Some(Thing::Joint(joint))) => start_member(state, id, joint),
         (Pen::Down, None) if !extend => {
-            let point = snap(&state.truss, &state.camera, from, false, &[]).point;
+            let point = draw::place_for_joint(state, from, false);
             match draw::add_joint(state, point, effects) {
                 Some(joint) => start_member(state, id, joint),
                 None => Drag::None,
@@ -176,7 +176,7 @@ fn pressed(state: &mut State, at: Pixel, on: Option<Thing>, extend: bool, effect
         (Pen::Down, Some(thing)) => draw::press_thing(state, thing),
         (Pen::Up, None) if !extend => state.selection = Selection::default(),
         (Pen::Down, None) => {
-            let point = snap(&state.truss, &state.camera, at, extend, &[]).point;
+            let point = draw::place_for_joint(state, at, extend);
             if let Some(joint) = draw::add_joint(state, point, effects) {
                 choose(state, Thing::Joint(joint), false);
             }

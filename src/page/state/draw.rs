@@ -1,23 +1,35 @@
 //! Drawing: joints and members made and moved, supports and roles given.
 
 use super::board_events::snapped_words;
+use super::camera::Pixel;
 use super::cells::support_kind;
 use super::entry::likely_role;
 use super::event::Effect;
 use super::model::{State, Thing, Tone};
-use super::snap::visible_step;
+use super::snap::{snap, visible_step};
 use super::update::{change, choose, say};
 use crate::exact::{Point, Rational, Vector, whole};
-use crate::measure::Written;
+use crate::measure::Sheet;
 use crate::truss::{Edit, Joint, JointId, Member, Selection, Support, Truss};
 use num_traits::Signed;
+
+/// The place for a joint where the pointer is. The first joint of a sheet sits at the origin, wherever it was pressed.
+pub(super) fn place_for_joint(state: &mut State, at: Pixel, free: bool) -> Point {
+    if state.truss.joints.is_empty() {
+        state.camera.origin = at;
+        state.wants_fit = false;
+        return Point::whole(0, 0);
+    }
+    snap(&state.truss, &state.camera, at, free, &[]).point
+}
 
 /// Makes a joint; gives its id back when it was made.
 pub(super) fn add_joint(state: &mut State, point: Point, effects: &mut Vec<Effect>) -> Option<JointId> {
     let mark = next_mark(&state.truss, &point);
     let label = format!("drew {mark}");
     let loose = state.truss.joints.last().is_some_and(|joint| joint.loose);
-    let joint = Joint { mark, x: Written::plain(point.x), y: Written::plain(point.y), loose };
+    let sheet = Sheet::of(state.truss.unit, &state.truss.step.value);
+    let joint = Joint { mark, x: sheet.written(&point.x), y: sheet.written(&point.y), loose };
     let id = JointId::new(state.truss.joints.len());
     change(state, &Edit::AddJoint(joint), label, effects).then_some(id)
 }

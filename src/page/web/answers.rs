@@ -28,7 +28,7 @@ fn answer(tile: &AnswerTile, on: &Callback<PageEvent>) -> Html {
         <button {class} aria-pressed={tile.chosen.to_string()} onclick={choose} data-question={format!("{question:?}").to_lowercase()}>
             <span class="question">{ question.text() }</span>
             <span class="verdict">{ sign(tile.sign) }<span class={tile.sign.class()}>{ &tile.answer }</span></span>
-            <span class="detail">{ &tile.detail }</span>
+            <span class="detail" title={tile.detail.clone()}>{ &tile.detail }</span>
         </button>
     }
 }

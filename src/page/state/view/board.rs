@@ -257,7 +257,7 @@ fn draw_marks(board: &Board, labels: &mut Labels) {
                 c if c < -0.5 => Anchor::End,
                 _ => Anchor::Middle,
             };
-            let out = if anchor == Anchor::Middle { 16.0 } else { 11.0 };
+            let out = if anchor == Anchor::Middle { 16.0 } else { 13.5 };
             LabelView {
                 at: Pixel::new(at.x + cos * out, at.y + sin * 16.0),
                 turn: 0.0,
