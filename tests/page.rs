@@ -3,7 +3,8 @@
 use chordwright::checks::{Limits, report};
 use chordwright::exact::{Point, ratio, whole};
 use chordwright::page::state::{
-    Book, Button, Cell, Column, Effect, Event, KeyPress, Modifiers, Pen, Pixel, PointerAct, Row, State, Thing, Tone, update,
+    Book, Button, Cell, Column, Effect, Event, KeyPress, Modifiers, Pen, Pixel, PointerAct, Row, State, Thing, Tone,
+    update,
 };
 use chordwright::truss::{FigureKind, JointId, MemberId, Role, SupportKind};
 use std::rc::Rc;
@@ -160,7 +161,8 @@ fn a_selected_member_takes_its_length_and_two_joints_their_run() {
     assert!(page.effects.contains(&Effect::FocusEntry));
     page.entry("10'");
     assert!(matches!(page.state.truss.figures[0].kind, FigureKind::Length { .. }));
-    page.send(Event::ThingChosen(Thing::Joint(JointId(0)), false)).send(Event::ThingChosen(Thing::Joint(JointId(2)), true));
+    page.send(Event::ThingChosen(Thing::Joint(JointId(0)), false))
+        .send(Event::ThingChosen(Thing::Joint(JointId(2)), true));
     page.entry("16'");
     assert!(matches!(page.state.truss.figures[1].kind, FigureKind::Run { .. }), "level and not joined: a run");
     assert_eq!(page.state.book, Book::Figures);
@@ -238,7 +240,13 @@ fn a_joint_is_dragged_and_put_back_when_the_pointer_is_taken_away() {
 fn a_second_finger_zooms_and_does_not_steal_the_drag() {
     let mut page = king_post();
     page.send(Event::PenToggled);
-    let finger = |id, x, y| PointerAct::Down { id, at: Pixel::new(x, y), button: Button::Main, held: Modifiers::default(), finger: true };
+    let finger = |id, x, y| PointerAct::Down {
+        id,
+        at: Pixel::new(x, y),
+        button: Button::Main,
+        held: Modifiers::default(),
+        finger: true,
+    };
     let before = page.state.camera.scale;
     page.pointer(finger(1, 100.0, 50.0)).pointer(finger(2, 200.0, 50.0));
     page.pointer(PointerAct::Move { id: 2, at: Pixel::new(300.0, 50.0), held: Modifiers::default() });
@@ -250,9 +258,11 @@ fn a_second_finger_zooms_and_does_not_steal_the_drag() {
 fn answers_to_an_older_truss_are_not_shown_as_the_answers_to_this_one() {
     let mut page = king_post();
     let old = page.state.fresh().expect("answers").report.clone();
-    let (state, effects) = update(&page.state, Event::CellEntered(Cell::new(Row::Joint(JointId(3)), Column::Y), "7'".into()));
+    let (state, effects) =
+        update(&page.state, Event::CellEntered(Cell::new(Row::Joint(JointId(3)), Column::Y), "7'".into()));
     assert!(state.fresh().is_none() && state.is_checking());
-    let revision = effects.iter().find_map(|e| if let Effect::Check(r, _) = e { Some(*r) } else { None }).expect("a check");
+    let revision =
+        effects.iter().find_map(|e| if let Effect::Check(r, _) = e { Some(*r) } else { None }).expect("a check");
     let (state, _) = update(&state, Event::Answered(revision - 1, Box::new(old.clone()), String::new()));
     assert!(state.fresh().is_none(), "an answer that comes late is dropped");
     let (state, _) = update(&state, Event::Answered(revision, Box::new(old), String::new()));
@@ -286,12 +296,21 @@ fn arrows_move_what_is_selected_by_steps_and_else_the_paper() {
 
 #[test]
 fn no_key_makes_the_page_panic_in_any_state() {
-    let keys = ["p", "f", "k", "+", "-", "1", "5", "n", "N", "m", "Delete", "Escape", "Enter", "ArrowUp", "?", "é", "", "F13"];
+    let keys =
+        ["p", "f", "k", "+", "-", "1", "5", "n", "N", "m", "Delete", "Escape", "Enter", "ArrowUp", "?", "é", "", "F13"];
     for mut page in [Page::new(), Page::sheet(), king_post()] {
         for key in keys.iter().chain(keys.iter().rev()) {
             page.key(key);
         }
-        for event in [Event::FindingChosen(99), Event::SuspectChosen(99), Event::MendTaken(99), Event::ImpliedTaken(9), Event::WithoutShown(7), Event::BookMoved(9999), Event::ShownToggled] {
+        for event in [
+            Event::FindingChosen(99),
+            Event::SuspectChosen(99),
+            Event::MendTaken(99),
+            Event::ImpliedTaken(9),
+            Event::WithoutShown(7),
+            Event::BookMoved(9999),
+            Event::ShownToggled,
+        ] {
             page.send(event);
         }
         chordwright::page::state::view::drawing_view(&page.state);

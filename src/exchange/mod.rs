@@ -1,20 +1,22 @@
-//! stand-in
-use crate::truss::Truss;
-pub fn read_truss(_: &[u8]) -> Result<Truss, String> {
-    Err("no".into())
-}
-pub fn write_truss(_: &Truss) -> String {
-    String::new()
-}
-pub fn to_link(_: &Truss) -> Result<String, String> {
-    Err("no".into())
-}
-pub fn from_link(_: &str) -> Result<Truss, String> {
-    Err("no".into())
-}
-pub fn fingerprint(_: &Truss) -> String {
-    String::new()
-}
-pub fn report_document(_: &str, _: &Truss, _: &crate::checks::Report) -> String {
-    String::new()
-}
+//! In and out: files, links and reports. Every byte from outside enters here, and is bounded here.
+
+mod document;
+mod file;
+mod fingerprint;
+mod headless;
+mod json;
+mod link;
+mod link_bytes;
+mod words;
+mod write;
+
+pub use document::{ReportDocument, report_document, report_json};
+pub use file::{ReadError, read_truss};
+pub use fingerprint::fingerprint;
+pub use headless::{Outcome, REPORT_HELP, run_report};
+pub use link::{LinkError, MAX_LINK_CHARACTERS, from_link, to_link};
+pub use words::report_text;
+pub use write::write_truss;
+
+/// The notice that goes out with everything.
+pub const NOTICE: &str = "Geometry only. A licensed engineer must verify this design, and local codes govern.";
