@@ -131,7 +131,7 @@ mod tests {
         let mut writer = Writer::default();
         writer.runs(&[5, 5, 5, 0, 9]);
         assert_eq!(Reader::new(&writer.bytes).runs(5), Ok(vec![5, 5, 5, 0, 9]));
-        assert_eq!(Reader::new(&writer.bytes).runs(4), Err(Damaged), "a run beyond the end");
+        assert_eq!(Reader::new(&writer.bytes).runs(2), Err(Damaged), "a run beyond the end");
         assert_eq!(Reader::new(&[1, 0]).runs(3), Err(Damaged), "an empty run");
         assert_eq!(Reader::new(&[0xff; 20]).number(), Err(Damaged), "a number without end");
     }

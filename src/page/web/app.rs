@@ -102,7 +102,7 @@ impl Component for App {
         }
         html! {
             <div class="page" data-theme={theme} {ondragover} {ondrop}>
-                <Head view={view::head_view(state)} theme={state.theme} link={state.link.clone()} on={on.clone()} />
+                <Head view={view::head_view(state)} theme={state.theme} link={state.link.clone()} truss={state.truss.clone()} on={on.clone()} />
                 <Answers tiles={view::answer_tiles(state)} on={on.clone()} />
                 <main class="work">
                     <Board

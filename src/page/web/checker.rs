@@ -57,10 +57,12 @@ impl Checker {
     }
 
     fn post(&self, revision: u64, truss: &Truss) -> bool {
-        let Ok(text) = serde_json::to_string(truss) else { return false };
+        let Ok(bytes) = postcard::to_allocvec(truss) else { return false };
         let message = Object::new();
         let set = |key: &str, value: JsValue| Reflect::set(&message, &key.into(), &value).is_ok();
-        if !set("id", JsValue::from_f64(revision as f64)) || !set("text", text.into()) {
+        if !set("id", JsValue::from_f64(revision as f64))
+            || !set("data", js_sys::Uint8Array::from(bytes.as_slice()).into())
+        {
             return false;
         }
         let inner = self.inner.borrow();
@@ -86,7 +88,9 @@ impl Checker {
         let Some(data) = event.dyn_ref::<MessageEvent>().map(MessageEvent::data) else { return };
         let get = |key: &str| Reflect::get(&data, &key.into()).ok();
         let Some(revision) = get("id").and_then(|id| id.as_f64()).map(|id| id as u64) else { return };
-        let read = get("text").and_then(|text| text.as_string()).and_then(|text| serde_json::from_str(&text).ok());
+        let read = get("data")
+            .and_then(|bytes| bytes.dyn_into::<js_sys::Uint8Array>().ok())
+            .and_then(|bytes| postcard::from_bytes(&bytes.to_vec()).ok());
         match read {
             Some(Answer { report, fingerprint }) => {
                 self.inner.borrow_mut().busy = None;

@@ -1,23 +1,35 @@
 //! The head of the page: what truss this is, and the few acts that concern all of it.
 
+use super::field::Field;
 use super::shell::read_file;
 use crate::page::state::view::HeadView;
 use crate::page::state::{Cell, Column, Event as PageEvent, Row, Theme};
-use web_sys::HtmlInputElement;
+use crate::truss::Truss;
+use std::rc::Rc;
+use web_sys::{HtmlInputElement, HtmlSelectElement};
 use yew::prelude::*;
+
+/// The units by their symbols and in words.
+const UNITS: [(&str, &str); 5] =
+    [("in", "inches"), ("ft", "feet"), ("mm", "millimetres"), ("cm", "centimetres"), ("m", "metres")];
 
 #[derive(Properties, PartialEq)]
 pub(super) struct HeadProps {
     pub(super) view: HeadView,
     pub(super) theme: Theme,
     pub(super) link: Option<String>,
+    pub(super) truss: Rc<Truss>,
     pub(super) on: Callback<PageEvent>,
 }
 
 /// The head of the page.
 #[component]
 pub(super) fn Head(props: &HeadProps) -> Html {
-    let HeadProps { view, theme, link, on } = props;
+    let HeadProps { view, theme, link, on, .. } = props;
+    let choose_unit = on.reform(|event: yew::Event| {
+        let symbol = event.target_dyn_into::<HtmlSelectElement>().map(|select| select.value()).unwrap_or_default();
+        PageEvent::CellEntered(Cell::new(Row::Sheet, Column::Unit), symbol)
+    });
     let act = |event: PageEvent| on.reform(move |_: MouseEvent| event.clone());
     let retitle = on.reform(|event: yew::Event| {
         let text = event.target_dyn_into::<HtmlInputElement>().map(|input| input.value()).unwrap_or_default();
@@ -35,7 +47,13 @@ pub(super) fn Head(props: &HeadProps) -> Html {
             <div class="head-title">
                 <h1><input class="title" aria-label="title of the sheet" value={view.title.clone()} onchange={retitle} maxlength="120" /></h1>
                 <p class="head-sheet">
-                    <span>{ &view.sheet }</span>
+                    <span class="sheet-choice">
+                        <select aria-label="the unit of the sheet" onchange={choose_unit}>
+                            { for UNITS.iter().map(|(symbol, words)| html! { <option value={*symbol} selected={view.unit == *symbol}>{ *words }</option> }) }
+                        </select>
+                        { "printed to" }
+                        <Field view={view.step.clone()} cell={Cell::new(Row::Sheet, Column::Step)} at={(0, 99)} truss={props.truss.clone()} on={on.clone()} />
+                    </span>
                     if !view.source.is_empty() { <span class="source">{ &view.source }</span> }
                     if !view.fingerprint.is_empty() {
                         <span class="fingerprint" title="fingerprint of this truss: the same on every machine">{ &view.fingerprint }</span>

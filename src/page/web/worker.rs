@@ -1,7 +1,7 @@
 //! Work off the main thread.
 //!
 //! The built page runs a second instance of the same module in a web worker. The script around it (`worker.js` of the
-//! native program) hands each message's text to [`worker_message`] and posts what comes back under the message's id.
+//! native program) hands what each message carries to [`worker_message`] and posts what comes back under the message's id.
 
 use crate::checks::{Report, report};
 use crate::exchange::fingerprint;
@@ -21,12 +21,12 @@ pub(super) fn answer(truss: &Truss) -> Answer {
     Answer { report: report(truss, &Default::default()), fingerprint: fingerprint(truss) }
 }
 
-/// Answers one message in the worker: the text of a truss in, the text of its answers out.
+/// Answers one message in the worker: the bytes of a truss in, the bytes of its answers out.
 ///
-/// Both sides are this same program; a text that is no truss gets an empty answer.
+/// Both sides are this same program, so the bytes need no version; bytes that are no truss get an empty answer.
 #[wasm_bindgen]
 #[must_use]
-pub fn worker_message(text: String) -> String {
-    let truss: Option<Truss> = serde_json::from_str(&text).ok();
-    truss.and_then(|truss| serde_json::to_string(&answer(&truss)).ok()).unwrap_or_default()
+pub fn worker_message(truss: Vec<u8>) -> Vec<u8> {
+    let truss: Option<Truss> = postcard::from_bytes(&truss).ok();
+    truss.and_then(|truss| postcard::to_allocvec(&answer(&truss)).ok()).unwrap_or_default()
 }

@@ -169,7 +169,7 @@ pub(super) fn draw_lengths(board: &Board, labels: &mut Labels, paths: &mut Vec<O
             continue;
         }
         let joined = |m: &crate::truss::Member| m.ends() == [from, to] || m.ends() == [to, from];
-        if board.truss.members.len() <= 2000 && !board.truss.members.iter().any(joined) {
+        if side > 0.0 && board.truss.members.len() <= 2000 && !board.truss.members.iter().any(joined) {
             lines.line(a, b);
         }
         along(board, labels, FigureId::new(index), a, b, side);

@@ -122,12 +122,12 @@ impl Labels {
 /// The turn of a text along a line, in degrees, so that it reads from below or from the right.
 pub(super) fn reading_turn(a: Pixel, b: Pixel) -> f64 {
     let turn = (b.y - a.y).atan2(b.x - a.x).to_degrees();
-    match turn {
+    let upright = match turn {
         t if t > 90.0 => t - 180.0,
-        t if t <= -90.0 => t + 180.0,
-        t if t > 89.9 => -90.0,
+        t if t < -90.0 => t + 180.0,
         t => t,
-    }
+    };
+    if upright > 89.9 { -90.0 } else { upright }
 }
 
 #[cfg(test)]
@@ -150,7 +150,7 @@ mod tests {
     fn texts_read_from_below_or_from_the_right() {
         let origin = Pixel::new(0.0, 0.0);
         for (x, y, expected) in
-            [(1.0, 0.0, 0.0), (-1.0, 0.0, 0.0), (0.0, -1.0, 90.0), (0.0, 1.0, -90.0), (-1.0, -1.0, 45.0)]
+            [(1.0, 0.0, 0.0), (-1.0, 0.0, 0.0), (0.0, -1.0, -90.0), (0.0, 1.0, -90.0), (-1.0, -1.0, 45.0)]
         {
             let turn = reading_turn(origin, Pixel::new(x, y));
             assert!(

@@ -19,8 +19,9 @@ pub use overlay::{OverlayView, overlay_view};
 pub use path::PathView;
 pub use sheet::{SheetTable, SheetView, sheet_view};
 
+use super::cells::{Cell, Column, Row};
 use super::model::{Source, State};
-use crate::measure::{Sheet, Unit, pretty};
+use crate::measure::pretty;
 use crate::truss::Selection;
 
 /// The head of the page.
@@ -28,8 +29,10 @@ use crate::truss::Selection;
 pub struct HeadView {
     /// The title of the sheet.
     pub title: String,
-    /// The unit and the step, in words.
-    pub sheet: String,
+    /// The symbol of the unit.
+    pub unit: &'static str,
+    /// The printing step, to be typed over.
+    pub step: CellView,
     /// Where it came from and what it is now.
     pub source: String,
     /// The change that can be undone.
@@ -43,13 +46,6 @@ pub struct HeadView {
 /// The head of the page, from the state.
 pub fn head_view(state: &State) -> HeadView {
     let truss = &state.truss;
-    let unit = match truss.unit {
-        Unit::In => "inches",
-        Unit::Ft => "feet",
-        Unit::Mm => "millimetres",
-        Unit::Cm => "centimetres",
-        Unit::M => "metres",
-    };
     let source = match &state.source {
         None => String::new(),
         Some(Source::Own) => "drawn here".into(),
@@ -58,14 +54,26 @@ pub fn head_view(state: &State) -> HeadView {
         Some(Source::Link) => "from a link, checked here".into(),
         Some(Source::Kept) => "kept by this browser".into(),
     };
-    let step = Sheet::of(truss.unit, &truss.step.value).exact_words(&truss.step.value);
     HeadView {
         title: if truss.title.is_empty() { "Untitled truss".into() } else { truss.title.clone() },
-        sheet: format!("{unit}, printed to {}", pretty(&step)),
+        unit: truss.unit.symbol(),
+        step: step_view(state),
         source,
         undo: state.history.undo_label().map(pretty),
         redo: state.history.redo_label().map(pretty),
         fingerprint: state.fresh().map(|checked| checked.fingerprint.clone()).unwrap_or_default(),
+    }
+}
+
+fn step_view(state: &State) -> CellView {
+    let cell = Cell::new(Row::Sheet, Column::Step);
+    let refused = state.refused.as_ref().filter(|refused| refused.cell == cell);
+    CellView {
+        cell: Some(cell),
+        text: refused.map_or(&state.truss.step.text, |refused| &refused.text).clone(),
+        label: "the step that values are printed to".into(),
+        kind: CellKind::Value,
+        error: refused.map(|refused| pretty(&refused.error)).unwrap_or_default(),
     }
 }
 
