@@ -11,6 +11,7 @@
 //! point only guides. No clock, no randomness: work is bounded by counts in [`Effort`].
 
 mod degrees;
+mod exclusion;
 mod meaning;
 mod misfits;
 mod proposal;
@@ -133,6 +134,16 @@ fn loose_joints(truss: &Truss, effort: &Effort) -> (CloseAnswer, Vec<Finding>) {
     let start = problem.adjusted(&[]);
     let trial = problem.trial(&[], &start);
     let count = truss.figures.len();
+    let certificate = if trial.layout.is_none() { problem.exclusion(&[], trial.best.as_ref()) } else { None };
+    if let Some(certificate) = certificate {
+        let kind = match certificate {
+            exclusion::Certificate::Set(_) => "set",
+            exclusion::Certificate::Chain { .. } => "chain",
+            exclusion::Certificate::Polygon { .. } => "polygon",
+            exclusion::Certificate::Stress(_) => "stress",
+        };
+        return (answer(CloseState::DoesNotClose, Proof::Exclusion, kind), Vec::new());
+    }
     let mut found = match &trial.layout {
         Some(_) => answer(CloseState::Closes, Proof::Layout, format!("{count} figures, every one checked")),
         None => answer(CloseState::NotSettled, Proof::Search, format!("{:?}", trial.best.map(|b| b.overshoot))),

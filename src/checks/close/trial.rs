@@ -1,5 +1,8 @@
 //! One question: do the figures close without some of them?
 
+use super::exclusion::judge::Case;
+use super::exclusion::stress::{Lean, stress};
+use super::exclusion::{Certificate, Source, chains};
 use super::meaning::{Condition, Function, conditions};
 use super::search::adjust::Network;
 use super::search::model::{Model, to_float};
@@ -168,4 +171,51 @@ fn lattice_step(truss: &Truss) -> Rational {
     let lengths = truss.figures.iter().filter(|figure| !super::meaning::conditions(truss, figure).is_empty());
     let steps = lengths.map(|figure| truss.step_of(figure)).filter(Signed::is_positive);
     steps.min().unwrap_or_else(|| words::fine_step(truss))
+}
+
+/// A condition that the least worst overshoot leans on, with its share of the heaviest.
+pub(crate) type Leaning = Vec<(Source, f64)>;
+
+/// A multiplier below this share of the heaviest counts as none.
+const LEAST_SHARE: f64 = 1e-5;
+
+impl Problem<'_> {
+    /// What exclusions speak about when these figures are disregarded.
+    pub(crate) fn case<'a>(&'a self, disregarded: &'a [FigureId]) -> Case<'a> {
+        Case { truss: self.truss, conditions: &self.conditions, sides: &self.sides, disregarded }
+    }
+
+    /// The conditions that the least worst overshoot leans on, heaviest first.
+    pub(crate) fn leaning(&self, disregarded: &[FigureId], best: &Best) -> Leaning {
+        self.with_base(disregarded, |base| {
+            let heaviest = best.multipliers.iter().fold(0.0f64, |a, m| a.max(m.abs()));
+            let share = |(row, m): (usize, &f64)| {
+                let row = &base.network.rows[row];
+                let source = Source { figure: FigureId::new(row.figure), condition: row.condition };
+                (source, m.abs() / heaviest)
+            };
+            let mut leaning: Leaning = best.multipliers.iter().enumerate().map(share).collect();
+            leaning.retain(|(_, share)| *share > LEAST_SHARE);
+            leaning.sort_by(|a, b| b.1.total_cmp(&a.1).then(a.0.cmp(&b.0)));
+            leaning
+        })
+    }
+
+    /// The places of the best that floats found, by joint.
+    pub(crate) fn places_of(&self, disregarded: &[FigureId], best: &Best) -> Vec<[f64; 2]> {
+        self.with_base(disregarded, |base| base.network.places(&best.unknowns))
+    }
+
+    /// A proof, accepted by the judge, that the figures without these cannot close.
+    pub(crate) fn exclusion(&self, disregarded: &[FigureId], best: Option<&Best>) -> Option<Certificate> {
+        let case = self.case(disregarded);
+        let simple = chains::simple(&case);
+        simple.or_else(|| {
+            let best = best?;
+            let sources: Vec<Source> = self.leaning(disregarded, best).into_iter().map(|(source, _)| source).collect();
+            let places = self.places_of(disregarded, best);
+            let lean = Lean { sources: &sources, places: &places, scale: &self.base.model.scale, splits: self.effort.splits };
+            stress(&case, &lean)
+        })
+    }
 }
