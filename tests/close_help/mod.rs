@@ -1,5 +1,7 @@
 //! Short ways to write trusses in the tests of closing.
-#![allow(dead_code)]
+#![allow(dead_code, unreachable_pub, missing_docs)]
+
+pub mod generate;
 
 use chordwright::exact::{Rational, parse_fraction, ratio, whole};
 use chordwright::measure::{Unit, Written};

@@ -11,12 +11,15 @@
 //! point only guides. No clock, no randomness: work is bounded by counts in [`Effort`].
 
 mod degrees;
+mod exclusion;
 mod meaning;
 mod misfits;
 mod proposal;
 mod readings;
+mod search;
 mod sides;
 mod strings;
+mod trial;
 mod verify;
 mod words;
 
@@ -78,11 +81,15 @@ pub fn close_watched(
     effort: &Effort,
     watch: &mut dyn FnMut(Progress) -> bool,
 ) -> (CloseAnswer, Vec<Finding>) {
-    let _ = (effort, watch);
+    let _ = watch;
     if truss.figures.is_empty() {
         return (answer(CloseState::NoFigures, Proof::None, "no figures to ask about"), Vec::new());
     }
-    let (answer, mut findings) = set_joints(truss);
+    let (answer, mut findings) = if truss.joints.iter().any(|joint| joint.loose) {
+        loose_joints(truss, effort)
+    } else {
+        set_joints(truss)
+    };
     findings.extend(strings::short_strings(truss));
     (answer, findings)
 }
@@ -120,6 +127,32 @@ fn set_joints(truss: &Truss) -> (CloseAnswer, Vec<Finding>) {
     let told = failing.iter().filter(|id| !truss.figure(**id).kind.is_relation() || is_tie(truss, **id));
     let findings = told.map(|id| misfits::misfit(truss, *id, &places)).collect();
     (found, findings)
+}
+
+fn loose_joints(truss: &Truss, effort: &Effort) -> (CloseAnswer, Vec<Finding>) {
+    let problem = trial::Problem::new(truss, effort);
+    let start = problem.adjusted(&[]);
+    let trial = problem.trial(&[], &start);
+    let count = truss.figures.len();
+    let certificate = if trial.layout.is_none() { problem.exclusion(&[], trial.best.as_ref()) } else { None };
+    if let Some(certificate) = certificate {
+        let kind = match certificate {
+            exclusion::Certificate::Set(_) => "set",
+            exclusion::Certificate::Chain { .. } => "chain",
+            exclusion::Certificate::Polygon { .. } => "polygon",
+            exclusion::Certificate::Stress(_) => "stress",
+        };
+        return (answer(CloseState::DoesNotClose, Proof::Exclusion, kind), Vec::new());
+    }
+    let mut found = match &trial.layout {
+        Some(_) => answer(CloseState::Closes, Proof::Layout, format!("{count} figures, every one checked")),
+        None => answer(CloseState::NotSettled, Proof::Search, format!("{:?}", trial.best.map(|b| b.overshoot))),
+    };
+    if let Some(layout) = &trial.layout {
+        found.readings = readings::readings(truss, layout);
+    }
+    found.layout = trial.layout;
+    (found, Vec::new())
 }
 
 /// Level and plumb are told here; the other relations are told by the question of true lines.

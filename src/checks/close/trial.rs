@@ -1,0 +1,221 @@
+//! One question: do the figures close without some of them?
+
+use super::exclusion::judge::Case;
+use super::exclusion::stress::{Lean, stress};
+use super::exclusion::{Certificate, Source, chains};
+use super::meaning::{Condition, Function, conditions};
+use super::search::adjust::Network;
+use super::search::model::{Model, to_float};
+use super::search::place;
+use super::search::rows::rows;
+use super::search::worst::Best;
+use super::sides::{Side, sides};
+use super::verify;
+use super::{Effort, words};
+use crate::exact::{Point, Rational};
+use crate::truss::{FigureId, Truss};
+use num_traits::Signed;
+
+/// A truss with everything about it that every trial needs.
+pub(crate) struct Problem<'t> {
+    /// The truss.
+    pub truss: &'t Truss,
+    /// The conditions of each figure.
+    pub conditions: Vec<Vec<Condition>>,
+    /// The sides the sketch tells.
+    pub sides: Vec<Side>,
+    /// The step on whose halvings layouts are put.
+    pub step: Rational,
+    /// The bounds of work.
+    pub effort: Effort,
+    base: Base,
+}
+
+/// The unknowns and rows without the exact ties of some figures.
+pub(crate) struct Base {
+    /// The unknowns.
+    pub model: Model,
+    /// Their rows; rows of disregarded figures may still be among them.
+    pub network: Network,
+}
+
+/// What a trial found.
+#[derive(Clone, Debug)]
+pub(crate) struct Trial {
+    /// A layout that agrees with every figure that was kept: judged exactly.
+    pub layout: Option<Vec<Point>>,
+    /// Places that agree with every figure kept, but not with the sketch's sides.
+    pub mirrored: Option<Vec<Point>>,
+    /// The best that floats found; `None` when they broke down or there was nothing to find.
+    pub best: Option<Best>,
+}
+
+/// An overshoot up to this (of the drawing's extent) may still be nothing but rounding.
+const DOUBT: f64 = 1e-9;
+
+impl<'t> Problem<'t> {
+    /// Prepares a truss.
+    pub(crate) fn new(truss: &'t Truss, effort: &Effort) -> Problem<'t> {
+        let conditions: Vec<Vec<Condition>> = truss.figures.iter().map(|figure| conditions(truss, figure)).collect();
+        let base = Base::new(truss, &conditions, &[]);
+        Problem { truss, sides: sides(truss), step: lattice_step(truss), effort: effort.clone(), base, conditions }
+    }
+
+    /// The unknowns and rows for a trial without these figures; built anew when their exact ties have to go.
+    pub(crate) fn with_base<R>(&self, disregarded: &[FigureId], work: impl FnOnce(&Base) -> R) -> R {
+        if disregarded.iter().any(|id| self.has_tie(*id)) {
+            work(&Base::new(self.truss, &self.conditions, disregarded))
+        } else {
+            work(&self.base)
+        }
+    }
+
+    fn has_tie(&self, id: FigureId) -> bool {
+        let is_tie = |c: &Condition| matches!(c.function, Function::Along { .. }) && c.is_exact();
+        self.conditions[id.index()].iter().any(is_tie)
+    }
+
+    /// The places that floats start from: the sketch, adjusted to the figures.
+    pub(crate) fn adjusted(&self, disregarded: &[FigureId]) -> Vec<[f64; 2]> {
+        self.with_base(disregarded, |base| {
+            let keep = |row: usize| base.keeps(row, disregarded);
+            let start = base.model.unknowns_from(&base.network.offsets, &base.model.float_sketch(self.truss));
+            base.network.places(&base.network.adjust(&start, self.effort.adjustments, &keep))
+        })
+    }
+
+    /// Looks for a layout without the disregarded figures, from these places.
+    pub(crate) fn trial(&self, disregarded: &[FigureId], start: &[[f64; 2]]) -> Trial {
+        self.with_base(disregarded, |base| self.trial_on(base, disregarded, start))
+    }
+
+    fn trial_on(&self, base: &Base, disregarded: &[FigureId], start: &[[f64; 2]]) -> Trial {
+        let (model, network) = (&base.model, &base.network);
+        let keep = |row: usize| base.keeps(row, disregarded);
+        if model.unknowns == 0 {
+            return self.judged(model.places(&[]).into_iter().collect(), disregarded, None);
+        }
+        let start = model.unknowns_from(&network.offsets, start);
+        let start = network.adjust(&start, self.effort.adjustments, &keep);
+        let Some(best) = network.least_worst(&start, self.effort.rounds, &keep) else {
+            return Trial { layout: None, mirrored: None, best: None };
+        };
+        if best.overshoot > DOUBT {
+            return Trial { layout: None, mirrored: None, best: Some(best) };
+        }
+        let mut trial = Trial { layout: None, mirrored: None, best: None };
+        for places in self.candidates(base, &best, &keep) {
+            trial = self.judged(places, disregarded, trial.mirrored);
+            if trial.layout.is_some() {
+                break;
+            }
+        }
+        trial.best = Some(best);
+        trial
+    }
+
+    fn candidates<'a>(
+        &'a self,
+        base: &'a Base,
+        best: &'a Best,
+        keep: &'a dyn Fn(usize) -> bool,
+    ) -> impl Iterator<Item = Vec<Point>> + 'a {
+        let has_exact = base.network.rows.iter().any(|row| row.exact);
+        let fractions = move || {
+            has_exact
+                .then(|| place::as_fractions(&base.model, &base.network, &self.conditions, &best.unknowns, keep))
+                .flatten()
+        };
+        place::on_lattices(&base.model, &base.network, &best.unknowns, &self.step, keep)
+            .take(4)
+            .chain(std::iter::once_with(fractions).flatten())
+    }
+
+    fn judged(&self, places: Vec<Point>, disregarded: &[FigureId], mirrored: Option<Vec<Point>>) -> Trial {
+        if verify::is_layout(self.truss, &self.sides, &places, disregarded) {
+            return Trial { layout: Some(places), mirrored: None, best: None };
+        }
+        let agrees = mirrored.is_none() && verify::is_layout(self.truss, &[], &places, disregarded);
+        Trial { layout: None, mirrored: if agrees { Some(places) } else { mirrored }, best: None }
+    }
+}
+
+impl Base {
+    fn new(truss: &Truss, conditions: &[Vec<Condition>], disregarded: &[FigureId]) -> Base {
+        let model = Model::new(truss, conditions, disregarded);
+        let kept = |figure: usize| !disregarded.contains(&FigureId::new(figure));
+        let rows = rows(&model, conditions, &kept);
+        let mut network = Network::new(model.float_offsets(), model.unknowns, rows);
+        network.least_half = least_half(truss, &model);
+        Base { model, network }
+    }
+
+    /// True when a row takes part in a trial.
+    pub(crate) fn keeps(&self, row: usize, disregarded: &[FigureId]) -> bool {
+        !disregarded.iter().any(|id| id.index() == self.network.rows[row].figure)
+    }
+}
+
+/// An eighth of the sheet's half step, in floats: as sure as a figure without any is taken to be.
+fn least_half(truss: &Truss, model: &Model) -> f64 {
+    let step = if truss.step.value.is_positive() { truss.step.value.clone() } else { words::fine_step(truss) };
+    let half = to_float(&(step / &model.scale)) / 16.0;
+    if half.is_finite() { half.clamp(1e-9, 1e-2) } else { 1e-6 }
+}
+
+/// The sheet's step, else the finest step of a figure, else a fine one.
+fn lattice_step(truss: &Truss) -> Rational {
+    if truss.step.value.is_positive() {
+        return truss.step.value.clone();
+    }
+    let lengths = truss.figures.iter().filter(|figure| !super::meaning::conditions(truss, figure).is_empty());
+    let steps = lengths.map(|figure| truss.step_of(figure)).filter(Signed::is_positive);
+    steps.min().unwrap_or_else(|| words::fine_step(truss))
+}
+
+/// A condition that the least worst overshoot leans on, with its share of the heaviest.
+pub(crate) type Leaning = Vec<(Source, f64)>;
+
+/// A multiplier below this share of the heaviest counts as none.
+const LEAST_SHARE: f64 = 1e-5;
+
+impl Problem<'_> {
+    /// What exclusions speak about when these figures are disregarded.
+    pub(crate) fn case<'a>(&'a self, disregarded: &'a [FigureId]) -> Case<'a> {
+        Case { truss: self.truss, conditions: &self.conditions, sides: &self.sides, disregarded }
+    }
+
+    /// The conditions that the least worst overshoot leans on, heaviest first.
+    pub(crate) fn leaning(&self, disregarded: &[FigureId], best: &Best) -> Leaning {
+        self.with_base(disregarded, |base| {
+            let heaviest = best.multipliers.iter().fold(0.0f64, |a, m| a.max(m.abs()));
+            let share = |(row, m): (usize, &f64)| {
+                let row = &base.network.rows[row];
+                let source = Source { figure: FigureId::new(row.figure), condition: row.condition };
+                (source, m.abs() / heaviest)
+            };
+            let mut leaning: Leaning = best.multipliers.iter().enumerate().map(share).collect();
+            leaning.retain(|(_, share)| *share > LEAST_SHARE);
+            leaning.sort_by(|a, b| b.1.total_cmp(&a.1).then(a.0.cmp(&b.0)));
+            leaning
+        })
+    }
+
+    /// The places of the best that floats found, by joint.
+    pub(crate) fn places_of(&self, disregarded: &[FigureId], best: &Best) -> Vec<[f64; 2]> {
+        self.with_base(disregarded, |base| base.network.places(&best.unknowns))
+    }
+
+    /// A proof, accepted by the judge, that the figures without these cannot close.
+    pub(crate) fn exclusion(&self, disregarded: &[FigureId], best: Option<&Best>) -> Option<Certificate> {
+        let case = self.case(disregarded);
+        let simple = chains::simple(&case);
+        simple.or_else(|| {
+            let best = best?;
+            let sources: Vec<Source> = self.leaning(disregarded, best).into_iter().map(|(source, _)| source).collect();
+            let places = self.places_of(disregarded, best);
+            let lean = Lean { sources: &sources, places: &places, scale: &self.base.model.scale, splits: self.effort.splits };
+            stress(&case, &lean)
+        })
+    }
+}

@@ -1,0 +1,156 @@
+//! Trusses from seeds: a true geometry, figured to a step, with a rough sketch; and slips of the pen planted in them.
+
+use super::{Draft, q, w};
+use chordwright::exact::{Point, Rational, Surd, nearest_multiple};
+use chordwright::measure::Written;
+use chordwright::truss::{Figure, FigureKind, Joint, JointId, Member, Role, Truss};
+
+/// Numbers from a seed (xorshift64*, Vigna 2016).
+#[derive(Clone, Debug)]
+pub struct Dice(u64);
+
+impl Dice {
+    pub fn new(seed: u64) -> Dice {
+        Dice(seed.wrapping_mul(0x9E37_79B9_7F4A_7C15) | 1)
+    }
+
+    pub fn next(&mut self) -> u64 {
+        self.0 ^= self.0 >> 12;
+        self.0 ^= self.0 << 25;
+        self.0 ^= self.0 >> 27;
+        self.0.wrapping_mul(0x2545_F491_4F6C_DD1D) >> 16
+    }
+
+    /// From 0 to n - 1.
+    pub fn below(&mut self, n: usize) -> usize {
+        (self.next() % n as u64) as usize
+    }
+
+    /// From lo to hi, both included.
+    pub fn between(&mut self, lo: i64, hi: i64) -> i64 {
+        lo + (self.next() % (hi - lo + 1) as u64) as i64
+    }
+}
+
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Shape {
+    Parallel,
+    Gable,
+    Bowed,
+    Scissors,
+    Irregular,
+}
+
+pub const SHAPES: [Shape; 5] = [Shape::Parallel, Shape::Gable, Shape::Bowed, Shape::Scissors, Shape::Irregular];
+
+/// A drawing and the truth it was made from.
+#[derive(Clone, Debug)]
+pub struct Planted {
+    pub truss: Truss,
+    pub truth: Vec<Point>,
+}
+
+/// True places: bottom joints L0..Ln, top joints U1..U(n-1) (parallel: U0..Un), in inches.
+fn truth(shape: Shape, panels: usize, dice: &mut Dice) -> (Vec<(String, Point)>, Vec<(usize, usize, Role)>) {
+    let panel = q(dice.between(48 * 64, 84 * 64), 64);
+    let height = q(dice.between(60 * 64, 110 * 64), 64);
+    let n = panels as i64;
+    let mut xs: Vec<Rational> = vec![w(0)];
+    for _ in 0..panels {
+        let width = if shape == Shape::Irregular { q(dice.between(40 * 64, 90 * 64), 64) } else { panel.clone() };
+        let last = xs.last().cloned().unwrap_or_else(|| w(0));
+        xs.push(last + width);
+    }
+    let mut jitter = |spread: i64| if shape == Shape::Irregular { q(dice.between(-spread * 64, spread * 64), 64) } else { w(0) };
+    let rise = |i: i64| -> Rational {
+        let from_end = i.min(n - i);
+        match shape {
+            Shape::Parallel | Shape::Irregular => height.clone(),
+            Shape::Gable => q(20, 1) + w(from_end) * q(28, 1),
+            Shape::Bowed => q(40, 1) + &height * q(4 * i * (n - i), n * n),
+            Shape::Scissors => q(30, 1) + w(from_end) * q(40, 1),
+        }
+    };
+    let bottom = |i: i64| if shape == Shape::Scissors { w(i.min(n - i)) * q(16, 1) } else { w(0) };
+    let mut joints = Vec::new();
+    for (i, x) in xs.iter().enumerate() {
+        let y = bottom(i as i64) + if i > 0 && i < panels { jitter(8) } else { w(0) };
+        joints.push((format!("L{i}"), Point { x: x.clone(), y }));
+    }
+    let ends = if shape == Shape::Parallel || shape == Shape::Bowed { (0, panels) } else { (1, panels - 1) };
+    let top: Vec<usize> = (ends.0..=ends.1).collect();
+    for &i in &top {
+        let point = Point { x: &xs[i] + jitter(6), y: rise(i as i64) + jitter(10) };
+        joints.push((format!("U{i}"), point));
+    }
+    let u = |i: usize| panels + 1 + i - ends.0;
+    let mut members = Vec::new();
+    (0..panels).for_each(|i| members.push((i, i + 1, Role::BottomChord)));
+    top.windows(2).for_each(|pair| members.push((u(pair[0]), u(pair[1]), Role::TopChord)));
+    top.iter().for_each(|&i| members.push((i, u(i), Role::Post)));
+    if ends.0 == 1 {
+        members.push((0, u(1), Role::TopChord));
+        members.push((panels, u(panels - 1), Role::TopChord));
+    }
+    for i in ends.0..ends.1 {
+        let (a, b) = if i < panels / 2 { (u(i), i + 1) } else { (i, u(i + 1)) };
+        members.push((a, b, Role::Web));
+    }
+    (joints, members)
+}
+
+/// A clean drawing: strings with an overall, rises and all member lengths, each rounded to `step`.
+pub fn clean(shape: Shape, panels: usize, seed: u64) -> Planted {
+    let mut dice = Dice::new(seed.wrapping_mul(31).wrapping_add(panels as u64));
+    let step = q(1, 16);
+    let (joints, members) = truth(shape, panels, &mut dice);
+    let mut draft = Draft::step("1/16");
+    for (index, (mark, point)) in joints.iter().enumerate() {
+        let off = |dice: &mut Dice| if index == 0 { w(0) } else { w(dice.between(-6, 6)) };
+        let (x, y) = (&point.x + off(&mut dice), &point.y + off(&mut dice));
+        let rough = |v: Rational| Written::plain(if index == 0 { v } else { v.round() });
+        draft.0.joints.push(Joint { mark: mark.clone(), x: rough(x), y: rough(y), loose: index != 0 });
+    }
+    for (index, (from, to, role)) in members.iter().enumerate() {
+        let (from, to) = (JointId::new(*from), JointId::new(*to));
+        draft.0.members.push(Member { mark: format!("M{index}"), from, to, role: *role });
+    }
+    let truth: Vec<Point> = joints.into_iter().map(|(_, point)| point).collect();
+    figure_it(&mut draft.0, &truth, panels, &step);
+    Planted { truss: draft.truss(), truth }
+}
+
+fn figure_it(truss: &mut Truss, truth: &[Point], panels: usize, step: &Rational) {
+    let printed = |v: Rational| Written::plain(step * Rational::from_integer(nearest_multiple(&v, step).expect("a step")));
+    let mut add = |kind: FigureKind| {
+        let mark = format!("f{}", truss.figures.len() + 1);
+        truss.figures.push(Figure { mark, kind, step: None });
+    };
+    let id = JointId::new;
+    for i in 0..panels {
+        add(FigureKind::Run { from: id(i), to: id(i + 1), value: printed(&truth[i + 1].x - &truth[i].x) });
+    }
+    add(FigureKind::Run { from: id(0), to: id(panels), value: printed(&truth[panels].x - &truth[0].x) });
+    for (i, point) in truth.iter().enumerate().skip(1) {
+        add(FigureKind::Rise { from: id(0), to: id(i), value: printed(&point.y - &truth[0].y) });
+    }
+    let ends: Vec<[JointId; 2]> = truss.members.iter().map(Member::ends).collect();
+    for [from, to] in ends {
+        let leg = &truth[to.index()] - &truth[from.index()];
+        let length = Surd::of_quadrance(&leg.quadrance()).expect("not negative").nearest(step).expect("a step");
+        let value = Written::plain(step * Rational::from_integer(length.steps));
+        let mark = format!("f{}", truss.figures.len() + 1);
+        truss.figures.push(Figure { mark, kind: FigureKind::Length { from, to, value }, step: None });
+    }
+}
+
+/// Changes the value of a figure by `by`.
+pub fn slip(truss: &Truss, figure: usize, by: &Rational) -> Truss {
+    let mut slipped = truss.clone();
+    if let FigureKind::Length { value, .. } | FigureKind::Run { value, .. } | FigureKind::Rise { value, .. } =
+        &mut slipped.figures[figure].kind
+    {
+        *value = Written::plain(&value.value + by);
+    }
+    slipped
+}

@@ -1,0 +1,51 @@
+//! Planted truths and planted slips.
+
+mod close_help;
+
+use chordwright::checks::{CloseState, Effort, close};
+use close_help::generate::{SHAPES, clean};
+
+#[test]
+fn clean_drawings_close() {
+    let start = std::time::Instant::now();
+    let mut count = 0;
+    for shape in SHAPES {
+        for panels in 4..=14 {
+            for seed in 0..4 {
+                let planted = clean(shape, panels, seed);
+                let (answer, _) = close(&planted.truss, &Effort::default());
+                count += 1;
+                if answer.state != CloseState::Closes {
+                    println!("{shape:?} {panels} {seed}: {} {}", answer.state.name(), answer.summary);
+                }
+            }
+        }
+    }
+    println!("{count} in {:?}", start.elapsed());
+}
+
+#[test]
+fn slips_are_excluded() {
+    use close_help::generate::{Dice, slip};
+    use close_help::q;
+    let start = std::time::Instant::now();
+    let mut counts = std::collections::BTreeMap::<String, usize>::new();
+    for shape in SHAPES {
+        for panels in [4, 7, 10, 14] {
+            for seed in 0..5 {
+                let planted = clean(shape, panels, seed);
+                let mut dice = Dice::new(seed + 1000 * panels as u64);
+                let figure = dice.below(planted.truss.figures.len());
+                let by = q(dice.between(2, 40) * if dice.below(2) == 0 { 1 } else { -1 }, 16);
+                let truss = slip(&planted.truss, figure, &by);
+                let at = std::time::Instant::now();
+                let (answer, _) = close(&truss, &Effort::default());
+                *counts.entry(format!("{} {}", answer.state.name(), if answer.state == CloseState::DoesNotClose { &answer.summary } else { "" })).or_default() += 1;
+                if answer.state == CloseState::NotSettled {
+                    println!("{shape:?} {panels} {seed}: {:?} by {by}: {} {:?}", truss.figures[figure].kind, answer.summary, at.elapsed());
+                }
+            }
+        }
+    }
+    println!("{counts:?} in {:?}", start.elapsed());
+}
