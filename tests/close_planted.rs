@@ -40,9 +40,20 @@ fn slips_are_excluded() {
                 let truss = slip(&planted.truss, figure, &by);
                 let at = std::time::Instant::now();
                 let (answer, _) = close(&truss, &Effort::default());
-                *counts.entry(format!("{} {}", answer.state.name(), if answer.state == CloseState::DoesNotClose { &answer.summary } else { "" })).or_default() += 1;
+                *counts
+                    .entry(format!(
+                        "{} {}",
+                        answer.state.name(),
+                        if answer.state == CloseState::DoesNotClose { &answer.summary } else { "" }
+                    ))
+                    .or_default() += 1;
                 if answer.state == CloseState::NotSettled {
-                    println!("{shape:?} {panels} {seed}: {:?} by {by}: {} {:?}", truss.figures[figure].kind, answer.summary, at.elapsed());
+                    println!(
+                        "{shape:?} {panels} {seed}: {:?} by {by}: {} {:?}",
+                        truss.figures[figure].kind,
+                        answer.summary,
+                        at.elapsed()
+                    );
                 }
             }
         }

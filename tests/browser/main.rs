@@ -7,5 +7,6 @@
 
 #![cfg(not(target_arch = "wasm32"))]
 
+mod main_path;
 mod shell;
 mod support;

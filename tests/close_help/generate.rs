@@ -61,7 +61,8 @@ fn truth(shape: Shape, panels: usize, dice: &mut Dice) -> (Vec<(String, Point)>,
         let last = xs.last().cloned().unwrap_or_else(|| w(0));
         xs.push(last + width);
     }
-    let mut jitter = |spread: i64| if shape == Shape::Irregular { q(dice.between(-spread * 64, spread * 64), 64) } else { w(0) };
+    let mut jitter =
+        |spread: i64| if shape == Shape::Irregular { q(dice.between(-spread * 64, spread * 64), 64) } else { w(0) };
     let rise = |i: i64| -> Rational {
         let from_end = i.min(n - i);
         match shape {
@@ -121,7 +122,8 @@ pub fn clean(shape: Shape, panels: usize, seed: u64) -> Planted {
 }
 
 fn figure_it(truss: &mut Truss, truth: &[Point], panels: usize, step: &Rational) {
-    let printed = |v: Rational| Written::plain(step * Rational::from_integer(nearest_multiple(&v, step).expect("a step")));
+    let printed =
+        |v: Rational| Written::plain(step * Rational::from_integer(nearest_multiple(&v, step).expect("a step")));
     let mut add = |kind: FigureKind| {
         let mark = format!("f{}", truss.figures.len() + 1);
         truss.figures.push(Figure { mark, kind, step: None });

@@ -85,11 +85,8 @@ pub fn close_watched(
     if truss.figures.is_empty() {
         return (answer(CloseState::NoFigures, Proof::None, "no figures to ask about"), Vec::new());
     }
-    let (answer, mut findings) = if truss.joints.iter().any(|joint| joint.loose) {
-        loose_joints(truss, effort)
-    } else {
-        set_joints(truss)
-    };
+    let (answer, mut findings) =
+        if truss.joints.iter().any(|joint| joint.loose) { loose_joints(truss, effort) } else { set_joints(truss) };
     findings.extend(strings::short_strings(truss));
     (answer, findings)
 }

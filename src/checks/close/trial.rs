@@ -214,7 +214,8 @@ impl Problem<'_> {
             let best = best?;
             let sources: Vec<Source> = self.leaning(disregarded, best).into_iter().map(|(source, _)| source).collect();
             let places = self.places_of(disregarded, best);
-            let lean = Lean { sources: &sources, places: &places, scale: &self.base.model.scale, splits: self.effort.splits };
+            let lean =
+                Lean { sources: &sources, places: &places, scale: &self.base.model.scale, splits: self.effort.splits };
             stress(&case, &lean)
         })
     }

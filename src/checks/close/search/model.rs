@@ -232,7 +232,9 @@ fn scale(truss: &Truss) -> Rational {
         }
     }
     for figure in &truss.figures {
-        if let FigureKind::Length { value, .. } | FigureKind::Run { value, .. } | FigureKind::Rise { value, .. } = &figure.kind {
+        if let FigureKind::Length { value, .. } | FigureKind::Run { value, .. } | FigureKind::Rise { value, .. } =
+            &figure.kind
+        {
             greatest = greatest.max(value.value.abs());
         }
     }
