@@ -224,7 +224,9 @@ pub fn pretty(text: &str) -> String {
         out.push(match c {
             '\'' if before.is_ascii_digit() || before == '½' => '′',
             '"' if before.is_ascii_digit() || before == '½' => '″',
-            '-' if after.is_ascii_digit() && !before.is_alphanumeric() && !matches!(before, '\'' | '"') => '−',
+            '-' if after.is_ascii_digit() && !before.is_alphanumeric() && !matches!(before, '\'' | '"' | '′' | '″') => {
+                '−'
+            }
             '*' => '×',
             c => c,
         });

@@ -84,6 +84,7 @@ fn moved(state: &mut State, id: i32, at: Pixel, held: Modifiers, effects: &mut V
         }
         Drag::Pan { last, .. } => {
             state.camera = state.camera.panned(at.x - last.x, at.y - last.y);
+            state.fitted = false;
             state.drag = Drag::Pan { id, last: at };
             state.pointer = Some(at);
         }
@@ -148,6 +149,7 @@ fn pinch(state: &mut State, mut fingers: [(i32, Pixel); 2], id: i32, at: Pixel) 
         .camera
         .panned(middle.x - middle_before.x, middle.y - middle_before.y)
         .zoomed(stretch.clamp(0.2, 5.0), middle);
+    state.fitted = false;
     state.drag = Drag::Pinch { fingers };
 }
 

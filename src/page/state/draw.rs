@@ -17,7 +17,7 @@ use num_traits::Signed;
 pub(super) fn place_for_joint(state: &mut State, at: Pixel, free: bool) -> Point {
     if state.truss.joints.is_empty() {
         state.camera.origin = at;
-        state.wants_fit = false;
+        state.fitted = false;
         return Point::whole(0, 0);
     }
     snap(&state.truss, &state.camera, at, free, &[]).point

@@ -80,7 +80,6 @@ pub(super) fn open(state: &mut State, truss: Truss, source: Source, effects: &mu
     state.open_suspect = None;
     state.shown = Shown::Layout;
     state.book_start = 0;
-    state.wants_fit = true;
     state.refused = None;
     state.entry_error = None;
     state.message = None;

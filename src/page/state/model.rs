@@ -28,7 +28,7 @@ pub struct State {
     pub open_finding: Option<usize>,
     /// The suspect that is open, by its place among the suspects.
     pub open_suspect: Option<usize>,
-    /// Whether the exact evidence of open findings is spread out.
+    /// Whether the board shows the sketch or a layout.
     pub shown: Shown,
     /// What is selected.
     pub selection: Selection,
@@ -40,12 +40,12 @@ pub struct State {
     pub book_start: usize,
     /// Whether the pen draws or the hand looks, selects and moves.
     pub pen: Pen,
-    /// The joint at which a member begins that is being drawn by keys or presses.
+    /// Which part of the plane the board shows, and how large.
     pub camera: Camera,
     /// The size of the board in pixels.
     pub board_size: (f64, f64),
-    /// True until the board was fitted to the truss for the first time.
-    pub wants_fit: bool,
+    /// True while the board shows the whole truss, and is to go on doing so when its size changes.
+    pub fitted: bool,
     /// What the pointer is doing on the board.
     pub drag: Drag,
     /// Where the pointer is over the board.

@@ -59,10 +59,10 @@ fn apply(state: &mut State, event: Event, effects: &mut Vec<Effect>) {
         Event::PointedAt(thing) => state.pointed = thing,
         Event::ThingChosen(thing, extend) => choose(state, thing, extend),
         Event::Pointer(act) => board_events::pointer(state, act, effects),
-        Event::Wheel(at, turned) => state.camera = state.camera.zoomed((-turned * 0.0015).clamp(-1.0, 1.0).exp(), at),
+        Event::Wheel(at, turned) => zoom(state, (-turned * 0.0015).clamp(-1.0, 1.0).exp(), at),
         Event::ZoomAsked(factor) => {
             let (width, height) = state.board_size;
-            state.camera = state.camera.zoomed(factor, Pixel::new(width / 2.0, height / 2.0));
+            zoom(state, factor, Pixel::new(width / 2.0, height / 2.0));
         }
         Event::FitAsked => fit(state),
         Event::BoardResized(width, height) => resized(state, width, height),
@@ -162,7 +162,7 @@ fn answered(state: &mut State, revision: u64, report: Report, fingerprint: Strin
     let findings = report.findings.len();
     state.checked = Some(Rc::new(Checked { truss: state.truss.clone(), report, fingerprint }));
     state.open_finding = state.open_finding.filter(|&index| index < findings);
-    if state.wants_fit {
+    if state.fitted && state.drag == Drag::None && state.pen == Pen::Up {
         fit(state);
     }
 }
@@ -183,14 +183,18 @@ fn take_kept(state: &mut State, effects: &mut Vec<Effect>) {
 pub(super) fn fit(state: &mut State) {
     if state.board_size.0 > 0.0 {
         state.camera = Camera::fitted(&state.points(), state.board_size);
-        state.wants_fit = state.truss.joints.is_empty();
     }
+    state.fitted = true;
+}
+
+fn zoom(state: &mut State, factor: f64, about: Pixel) {
+    state.camera = state.camera.zoomed(factor, about);
+    state.fitted = false;
 }
 
 fn resized(state: &mut State, width: f64, height: f64) {
-    let first = state.board_size == (0.0, 0.0) || state.wants_fit;
     let (old_width, old_height) = std::mem::replace(&mut state.board_size, (width, height));
-    if first {
+    if state.fitted || old_width == 0.0 {
         fit(state);
     } else {
         state.camera = state.camera.panned((width - old_width) / 2.0, (height - old_height) / 2.0);
@@ -366,6 +370,7 @@ fn next_joint(state: &mut State, backwards: bool) {
 fn arrow(state: &mut State, right: i64, up: i64, large: bool, effects: &mut Vec<Effect>) {
     if state.selection.joints.is_empty() {
         let (dx, dy) = (right as f64 * -60.0, up as f64 * 60.0);
+        state.fitted = false;
         state.camera = state.camera.panned(dx, dy);
     } else {
         draw::nudge(state, right, up, if large { 12 } else { 1 }, effects);

@@ -123,7 +123,7 @@ impl Component for App {
                 { for state.help.then(|| help(on)) }
                 { message(state, on) }
                 { notice() }
-                <Sheet view={self.sheet()} title={view::head_view(state).title} />
+                <Sheet view={self.sheet()} />
             </div>
         }
     }
@@ -148,7 +148,9 @@ impl App {
 
     fn sheet(&self) -> Rc<Option<SheetView>> {
         let state = &*self.state;
-        let same = |old: &State| Rc::ptr_eq(&old.truss, &state.truss) && old.checked == state.checked;
+        let same = |old: &State| {
+            Rc::ptr_eq(&old.truss, &state.truss) && old.checked == state.checked && old.shown == state.shown
+        };
         self.sheet.borrow_mut().get(same, || state.clone(), || view::sheet_view(state))
     }
 }

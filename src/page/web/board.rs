@@ -125,11 +125,11 @@ fn Drawing(props: &DrawingProps) -> Html {
     }
 }
 
-fn paths(views: &[PathView]) -> Html {
+pub(super) fn paths(views: &[PathView]) -> Html {
     html! { <g>{ for views.iter().map(|view| html! { <path class={view.class} d={view.d.clone()} /> }) }</g> }
 }
 
-fn labels(views: &[LabelView]) -> Html {
+pub(super) fn labels(views: &[LabelView]) -> Html {
     let label = |view: &LabelView| {
         html! {
             <text class={view.class} transform={Turned::attribute(view)} text-anchor={view.anchor.name()} dy="0.36em">{ &view.text }</text>

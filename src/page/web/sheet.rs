@@ -1,14 +1,14 @@
 //! The printed sheet: answers, findings and tables, laid out for paper. On the screen it is not shown.
 
 use super::app::NOTICE;
-use crate::page::state::view::{SheetTable, SheetView};
+use super::board::{labels, paths};
+use crate::page::state::view::{PAPER, SheetTable, SheetView};
 use std::rc::Rc;
 use yew::prelude::*;
 
 #[derive(Properties, PartialEq)]
 pub(super) struct SheetProps {
     pub(super) view: Rc<Option<SheetView>>,
-    pub(super) title: String,
 }
 
 /// The printed sheet.
@@ -17,7 +17,11 @@ pub(super) fn Sheet(props: &SheetProps) -> Html {
     let Some(view) = &*props.view else { return Html::default() };
     html! {
         <section class="sheet" aria-hidden="true">
-            <p class="sheet-title">{ &props.title }<span>{ format!("fingerprint {}", view.fingerprint) }</span></p>
+            <p class="sheet-title">{ &view.title }</p>
+            <p>{ &view.particulars }</p>
+            <svg class="sheet-drawing board" viewBox={format!("0 0 {PAPER} {}", view.height)}>
+                { paths(&view.drawing.paths) }{ labels(&view.drawing.labels) }
+            </svg>
             { for view.questions.iter().map(|(question, lines)| html! {
                 <div class="sheet-question">
                     <p>{ question }</p>

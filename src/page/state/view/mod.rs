@@ -17,7 +17,7 @@ pub use evidence::{EvidenceLine, EvidenceView, FindingView, MendView, SuspectVie
 pub use labels::{Anchor, LabelView};
 pub use overlay::{OverlayView, overlay_view};
 pub use path::PathView;
-pub use sheet::{SheetTable, SheetView, sheet_view};
+pub use sheet::{PAPER, SheetTable, SheetView, sheet_view};
 
 use super::cells::{Cell, Column, Row};
 use super::model::{Source, State};

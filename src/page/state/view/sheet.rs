@@ -1,18 +1,26 @@
-//! The printed sheet: what the screen shows, laid out for paper, with every table whole.
+//! The printed sheet: the drawing fitted to the paper, the answers with their findings, and every table whole.
 
+use super::board::{DrawingView, drawing_view};
 use super::book::{RowView, book_view, column_titles};
-use crate::measure::pretty;
-use crate::page::state::{Book, State};
+use crate::measure::{Sheet, pretty};
+use crate::page::state::{Book, Camera, Shown, State};
+use crate::truss::Selection;
 
-/// The parts of the sheet that are not on the screen already.
-#[derive(Clone, Debug, Default, PartialEq, Eq)]
+/// The printed sheet.
+#[derive(Clone, Debug, Default, PartialEq)]
 pub struct SheetView {
+    /// The title.
+    pub title: String,
+    /// Unit, step and fingerprint, in words.
+    pub particulars: String,
+    /// The drawing, for a paper of [`PAPER`] units.
+    pub drawing: DrawingView,
+    /// The height of the drawing, in units.
+    pub height: f64,
     /// Findings by question: the question, the answer, and a line for each finding.
     pub questions: Vec<(String, Vec<String>)>,
     /// The tables.
     pub tables: Vec<SheetTable>,
-    /// The fingerprint of the truss.
-    pub fingerprint: String,
 }
 
 /// A table of the sheet.
@@ -26,26 +34,66 @@ pub struct SheetTable {
     pub rows: Vec<Vec<String>>,
 }
 
-/// The most members of which tables are laid out for paper.
-const MOST: usize = 1200;
+/// The width of the drawing on paper, in units: type of 12 units is about 3 mm high on a page of 186 mm.
+pub const PAPER: f64 = 740.0;
+/// The least and greatest height of the drawing, in units.
+const HEIGHTS: (f64, f64) = (300.0, 760.0);
+/// The most lines in tables that are laid out for paper.
+const MOST: usize = 4000;
+/// The most findings printed for one question.
+const MOST_FINDINGS: usize = 60;
 
-/// The sheet, from the state; `None` before there are answers or for a truss whose tables would be too long.
+/// The sheet, from the state; `None` before there are answers, or for a truss whose tables would be too long for paper.
 pub fn sheet_view(state: &State) -> Option<SheetView> {
     let checked = state.fresh()?;
-    if state.truss.members.len() + state.truss.figures.len() + state.truss.joints.len() > 3 * MOST {
+    let truss = &state.truss;
+    if truss.members.len() + truss.figures.len() + truss.joints.len() > MOST {
         return None;
     }
-    let questions = super::answer_tiles(state).into_iter().map(|tile| {
+    let (drawing, height) = drawing(state);
+    let step = Sheet::of(truss.unit, &truss.step.value).exact_words(&truss.step.value);
+    Some(SheetView {
+        title: super::head_view(state).title,
+        particulars: format!(
+            "unit {}, printed to {}, fingerprint {}",
+            truss.unit.symbol(),
+            pretty(&step),
+            checked.fingerprint
+        ),
+        drawing,
+        height,
+        questions: questions(state, checked),
+        tables: Book::ALL.into_iter().filter_map(|book| table(state, book)).collect(),
+    })
+}
+
+/// The drawing alone, with nothing selected or opened, fitted to the paper.
+fn drawing(state: &State) -> (DrawingView, f64) {
+    let points = state.points();
+    let wide = Camera::fitted(&points, (PAPER, 10_000.0));
+    let heights = points.iter().map(|point| wide.pixel(point).y);
+    let span = heights.clone().fold(f64::MIN, f64::max) - heights.fold(f64::MAX, f64::min);
+    let height = (span + 180.0).clamp(HEIGHTS.0, HEIGHTS.1);
+    let board_size = (PAPER, height);
+    let paper = State {
+        camera: Camera::fitted(&points, board_size),
+        board_size,
+        selection: Selection::default(),
+        open_finding: None,
+        shown: if state.shown == Shown::Sketch { Shown::Sketch } else { Shown::Layout },
+        ..state.clone()
+    };
+    (drawing_view(&paper), height)
+}
+
+fn questions(state: &State, checked: &crate::page::state::Checked) -> Vec<(String, Vec<String>)> {
+    let question = |tile: super::AnswerTile| {
         let findings = checked.report.findings.iter().filter(|finding| finding.rule.question() == tile.question);
-        let lines = findings.take(40).map(|finding| format!("{}: {}", finding.level.name(), pretty(&finding.text)));
+        let lines = findings.take(MOST_FINDINGS).map(|f| format!("{}: {}", f.level.name(), pretty(&f.text)));
         let detail = if tile.detail.is_empty() { String::new() } else { format!(" ({})", tile.detail) };
         (format!("{} {}{detail}", tile.question.text(), tile.answer), lines.collect())
-    });
-    Some(SheetView {
-        questions: questions.collect(),
-        tables: Book::ALL.into_iter().filter_map(|book| table(state, book)).collect(),
-        fingerprint: checked.fingerprint.clone(),
-    })
+    };
+    super::answer_tiles(state).into_iter().map(question).collect()
 }
 
 fn table(state: &State, book: Book) -> Option<SheetTable> {
