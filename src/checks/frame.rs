@@ -244,8 +244,13 @@ fn spokes(lattice: &Lattice, ends: &[[usize; 2]], rank: &[u32]) -> (Vec<u32>, Ve
         }
     }
     for joint in 0..lattice.len() {
+        // Members between the same joints are side by side: in one order seen from one end, in the other from the other.
+        let side_by_side = |s: &Spoke, t: &Spoke| {
+            let order = s.member.cmp(&t.member);
+            if rank[joint] < rank[s.far as usize] { order } else { order.reverse() }
+        };
         spokes[starts[joint] as usize..starts[joint + 1] as usize].sort_by(|s, t| {
-            lattice.compare_directions(joint, s.far as usize, t.far as usize).then(s.member.cmp(&t.member))
+            lattice.compare_directions(joint, s.far as usize, t.far as usize).then_with(|| side_by_side(s, t))
         });
     }
     (starts, spokes)

@@ -9,7 +9,7 @@
 //! Every answer is exact and the same in each [`Tier`]; only [`Lattice::coarse`] is rounded, and never says that
 //! two things are apart that are not.
 
-use super::predicates::{self, Orientation};
+use super::predicates::Orientation;
 use super::rational::Rational;
 use super::{Point, Vector};
 use num_bigint::BigInt;
@@ -39,7 +39,7 @@ pub struct Lattice<'a> {
     tier: Tier,
 }
 
-/// The direction from one point to another in lowest terms, as a row of whole numbers.
+/// The direction from one point to another, as a row of whole numbers: in lowest terms when it fits machine integers.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub enum Direction {
     /// It fits machine integers.
@@ -60,6 +60,8 @@ pub struct Reach {
 
 const SMALL_SPAN: i64 = 1 << 30;
 const WIDE_SPAN: i64 = 1 << 60;
+/// Directions of more bits are left as they are.
+const REDUCED_BITS: u64 = 192;
 /// A common denominator beyond this many bits cannot give a lattice that fits 60 bits and is not looked for further.
 const DENOMINATOR_BITS: u64 = 256;
 
@@ -93,9 +95,12 @@ impl<'a> Lattice<'a> {
         let (low, span) = extent(points);
         let steps = Rational::from_integer(BigInt::from(WIDE_SPAN - 2));
         let scale = if span.is_zero() { Rational::one() } else { steps / span };
-        let place = |value: &Rational, low: &Rational| ((value - low) * &scale).floor().to_integer();
-        let coarse =
-            |p: &Point| [place(&p.x, &low.x), place(&p.y, &low.y)].map(|c| c.to_i64().unwrap_or(0).clamp(0, WIDE_SPAN));
+        let place = |value: &Rational, low: &Rational| {
+            let above = value.numer() * low.denom() - low.numer() * value.denom();
+            let place = (above * scale.numer()).div_floor(&(value.denom() * low.denom() * scale.denom()));
+            place.to_i64().unwrap_or(0).clamp(0, WIDE_SPAN)
+        };
+        let coarse = |p: &Point| [place(&p.x, &low.x), place(&p.y, &low.y)];
         Lattice { coarse: points.iter().map(coarse).collect(), points, scale, tier: Tier::Fractions }
     }
 
@@ -125,6 +130,16 @@ impl<'a> Lattice<'a> {
         self.coarse[i]
     }
 
+    /// The displacement along a pair in coarse steps, each part off by less than one where coordinates are rounded.
+    pub fn coarse_along(&self, pair: [usize; 2]) -> [i64; 2] {
+        self.difference(pair)
+    }
+
+    /// How many coarse steps make one unit.
+    pub fn scale(&self) -> &Rational {
+        &self.scale
+    }
+
     /// A distance prepared for [`Self::is_beyond`].
     pub fn reach(&self, distance: &Rational) -> Reach {
         let steps = distance * &self.scale;
@@ -142,7 +157,7 @@ impl<'a> Lattice<'a> {
             return rough(0).then_with(|| rough(1));
         }
         let (p, q) = (&self.points[a], &self.points[b]);
-        rough(0).then_with(|| p.x.cmp(&q.x)).then_with(|| rough(1)).then_with(|| p.y.cmp(&q.y))
+        rough(0).then_with(|| compare(&p.x, &q.x)).then_with(|| rough(1)).then_with(|| compare(&p.y, &q.y))
     }
 
     /// The side of the line from `a` to `b` on which `c` lies.
@@ -159,23 +174,23 @@ impl<'a> Lattice<'a> {
     pub fn turn(&self, first: [usize; 2], second: [usize; 2]) -> Ordering {
         let (v, w) = (self.difference(first), self.difference(second));
         let quick = self.quick_sign(v, [w[1], w[0].wrapping_neg()]);
-        quick.unwrap_or_else(|| self.displacement(first).cross(&self.displacement(second)).cmp(&Rational::zero()))
+        quick.unwrap_or_else(|| self.unreduced(first).cross(&self.unreduced(second)).cmp(&BigInt::zero()))
     }
 
     /// The sign of the dot product of the displacements along two pairs of points.
     pub fn facing(&self, first: [usize; 2], second: [usize; 2]) -> Ordering {
         let quick = self.quick_sign(self.difference(first), self.difference(second));
-        quick.unwrap_or_else(|| self.displacement(first).dot(&self.displacement(second)).cmp(&Rational::zero()))
+        quick.unwrap_or_else(|| self.unreduced(first).dot(&self.unreduced(second)).cmp(&BigInt::zero()))
     }
 
     /// Orders the directions from `at` to two other points counter-clockwise, starting at the one to the right; see
-    /// [`predicates::compare_directions`].
+    /// [`super::compare_directions`].
     pub fn compare_directions(&self, at: usize, a: usize, b: usize) -> Ordering {
-        if self.tier == Tier::Fractions && !(self.clearly_apart(at, a) && self.clearly_apart(at, b)) {
-            return predicates::compare_directions(&self.displacement([at, a]), &self.displacement([at, b]));
-        }
-        let (v, w) = (self.difference([at, a]), self.difference([at, b]));
-        half_plane(v).cmp(&half_plane(w)).then_with(|| self.turn([at, b], [at, a]))
+        let half = |far: usize| match self.tier {
+            Tier::Fractions if !self.clearly_apart(at, far) => self.unreduced([at, far]).half_plane(),
+            _ => half_plane(self.difference([at, far])),
+        };
+        half(a).cmp(&half(b)).then_with(|| self.turn([at, b], [at, a]))
     }
 
     /// Compares the quadrances of two pairs of points.
@@ -184,32 +199,57 @@ impl<'a> Lattice<'a> {
         match self.tier {
             Tier::Small => squares(v).cmp(&squares(w)),
             Tier::Wide => wide_squares(v).cmp(&wide_squares(w)),
-            Tier::Fractions => self.displacement(first).quadrance().cmp(&self.displacement(second).quadrance()),
+            Tier::Fractions => {
+                let (v, w) = (self.unreduced(first), self.unreduced(second));
+                (v.dot(&v) * &w.over * &w.over).cmp(&(w.dot(&w) * &v.over * &v.over))
+            }
         }
     }
 
     /// True when `c` is farther than `reach` from the line through `a` and `b` (never said when these coincide).
-    ///
-    /// Quick, and cautious: `false` may mean that only exact distances can tell.
     pub fn is_beyond(&self, c: usize, [a, b]: [usize; 2], reach: &Reach) -> bool {
-        let (v, w) = (self.difference([a, b]), self.difference([a, c]));
-        match (self.tier, reach.square) {
-            (Tier::Small, Some(square)) => {
-                let cross = (v[0] * w[1] - v[1] * w[0]).unsigned_abs() as u128;
-                let allowed = square.checked_mul(squares(v) as u128);
-                allowed.is_some_and(|allowed| cross * cross > allowed)
-            }
-            _ => {
-                let direction = self.displacement([a, b]);
-                let cross = direction.cross(&self.displacement([a, c]));
-                &cross * &cross > &reach.distance * &reach.distance * direction.quadrance()
+        if let (Tier::Small, Some(square)) = (self.tier, reach.square) {
+            let (v, w) = (self.difference([a, b]), self.difference([a, c]));
+            let cross = (v[0] * w[1] - v[1] * w[0]).unsigned_abs().into();
+            if let Some(is_beyond) = quotient_is_beyond(cross, squares(v) as u128, square) {
+                return is_beyond;
             }
         }
+        let (v, w) = (self.unreduced([a, b]), self.unreduced([a, c]));
+        exceeds(&v.cross(&w), &w.over, &v.dot(&v), reach)
+    }
+
+    /// True when the end of the shorter of two legs at a corner is farther than `reach` from where the corner would be
+    /// square (never said when a leg has no length).
+    pub fn is_far_from_square(&self, at: usize, a: usize, b: usize, reach: &Reach) -> bool {
+        let [long, short] = if self.compare_quadrances([at, a], [at, b]).is_ge() { [a, b] } else { [b, a] };
+        if let (Tier::Small, Some(square)) = (self.tier, reach.square) {
+            let (v, w) = (self.difference([at, long]), self.difference([at, short]));
+            let dot = (v[0] * w[0] + v[1] * w[1]).unsigned_abs().into();
+            if let Some(is_beyond) = quotient_is_beyond(dot, squares(v) as u128, square) {
+                return is_beyond;
+            }
+        }
+        let (v, w) = (self.unreduced([at, long]), self.unreduced([at, short]));
+        exceeds(&v.dot(&w), &w.over, &v.dot(&v), reach)
     }
 
     /// The exact displacement along a pair of points.
     pub fn displacement(&self, [a, b]: [usize; 2]) -> Vector {
         &self.points[b] - &self.points[a]
+    }
+
+    /// The quadrance between a pair of points.
+    pub fn quadrance(&self, pair: [usize; 2]) -> Rational {
+        let v = self.displacement(pair);
+        let (a, b) = (v.x.denom(), v.y.denom());
+        if a.is_one() || b.is_one() || a.gcd(b).is_one() {
+            // Squares of lowest terms over coprime denominators add up to lowest terms.
+            let (x, y) = (v.x.numer() * b, v.y.numer() * a);
+            let over = a * b;
+            return Rational::new_raw(&x * &x + &y * &y, &over * &over);
+        }
+        v.quadrance()
     }
 
     /// The displacement along a pair in whole lattice steps; `None` in the tier that has none. Equal steps are equal
@@ -221,7 +261,9 @@ impl<'a> Lattice<'a> {
     /// The spread at `at` between the lines to `a` and to `b`; `None` when either coincides with `at`.
     pub fn spread(&self, at: usize, a: usize, b: usize) -> Option<Rational> {
         if self.tier != Tier::Small {
-            return super::spread(&self.points[at], &self.points[a], &self.points[b]);
+            let (v, w) = (self.unreduced([at, a]), self.unreduced([at, b]));
+            let (cross, whole) = (v.cross(&w), v.dot(&v) * w.dot(&w));
+            return (!whole.is_zero()).then(|| Rational::new(&cross * &cross, whole));
         }
         let (numerator, denominator) = self.small_spread(at, a, b);
         if denominator == 0 {
@@ -241,18 +283,36 @@ impl<'a> Lattice<'a> {
                 return left < right;
             }
         }
-        self.spread(at, a, b).is_some_and(|spread| spread < *limit)
+        let (v, w) = (self.unreduced([at, a]), self.unreduced([at, b]));
+        let cross = v.cross(&w);
+        &cross * &cross * limit.denom() < v.dot(&v) * w.dot(&w) * limit.numer()
     }
 
     /// The direction along a pair of points in lowest terms; zeros when they coincide.
     pub fn direction(&self, pair: [usize; 2]) -> Direction {
         if self.tier == Tier::Fractions {
-            let v = self.displacement(pair);
-            return Direction::of(&v);
+            return Direction::of_parts(self.unreduced(pair).parts);
         }
         let [x, y] = self.difference(pair);
         let common = x.gcd(&y).max(1);
         Direction::Short([x / common, y / common])
+    }
+
+    /// The displacement over a common denominator, without looking for common factors.
+    fn unreduced(&self, [a, b]: [usize; 2]) -> Unreduced {
+        if self.tier != Tier::Fractions {
+            let parts = self.difference([a, b]).map(BigInt::from);
+            return Unreduced { parts, over: self.scale.to_integer() };
+        }
+        let (p, q) = (&self.points[a], &self.points[b]);
+        let less = |p: &Rational, q: &Rational| {
+            if p.denom() == q.denom() {
+                return (q.numer() - p.numer(), p.denom().clone());
+            }
+            (q.numer() * p.denom() - p.numer() * q.denom(), p.denom() * q.denom())
+        };
+        let ((x, over_x), (y, over_y)) = (less(&p.x, &q.x), less(&p.y, &q.y));
+        Unreduced { parts: [x * &over_y, y * &over_x], over: over_x * over_y }
     }
 
     fn small_spread(&self, at: usize, a: usize, b: usize) -> (u128, u128) {
@@ -286,6 +346,34 @@ impl<'a> Lattice<'a> {
     }
 }
 
+/// A displacement as whole numbers over a positive denominator.
+struct Unreduced {
+    parts: [BigInt; 2],
+    over: BigInt,
+}
+
+impl Unreduced {
+    fn cross(&self, other: &Unreduced) -> BigInt {
+        &self.parts[0] * &other.parts[1] - &self.parts[1] * &other.parts[0]
+    }
+
+    fn dot(&self, other: &Unreduced) -> BigInt {
+        &self.parts[0] * &other.parts[0] + &self.parts[1] * &other.parts[1]
+    }
+
+    fn half_plane(&self) -> u8 {
+        half_plane([&self.parts[0], &self.parts[1]].map(|part| part.signum().to_i64().unwrap_or(0)))
+    }
+}
+
+fn compare(p: &Rational, q: &Rational) -> Ordering {
+    if p.denom() == q.denom() {
+        p.numer().cmp(q.numer())
+    } else {
+        (p.numer() * q.denom()).cmp(&(q.numer() * p.denom()))
+    }
+}
+
 impl Reach {
     /// In coarse steps, rounded up, with one more for the rounding of a place.
     pub fn steps(&self) -> i64 {
@@ -303,6 +391,14 @@ impl Direction {
     pub fn of(v: &Vector) -> Direction {
         let x = v.x.numer() * v.y.denom();
         let y = v.y.numer() * v.x.denom();
+        Direction::of_parts([x, y])
+    }
+
+    /// In lowest terms, except where that would cost more than it saves.
+    fn of_parts([x, y]: [BigInt; 2]) -> Direction {
+        if x.bits().max(y.bits()) > REDUCED_BITS {
+            return Direction::Long([x, y]);
+        }
         let common = x.gcd(&y);
         if common.is_zero() {
             return Direction::Short([0, 0]);
@@ -327,6 +423,23 @@ impl Direction {
             Direction::Long(parts) => parts.clone(),
         }
     }
+}
+
+/// Whether product²/whole is certainly more than a square rounded up; `None` when the roundings leave it open.
+fn quotient_is_beyond(product: u128, whole: u128, square: u128) -> Option<bool> {
+    let allowed = square.checked_mul(whole)?;
+    match product * product {
+        squared if squared > allowed => Some(true),
+        // Rounded up by less than one.
+        squared if squared <= allowed - whole => Some(false),
+        _ => None,
+    }
+}
+
+/// True when (product / over)² is more than reach² times whole.
+fn exceeds(product: &BigInt, over: &BigInt, whole: &BigInt, reach: &Reach) -> bool {
+    let (far, near) = (product * reach.distance.denom(), over * reach.distance.numer());
+    &far * &far > &near * &near * whole
 }
 
 fn squares(v: [i64; 2]) -> i64 {

@@ -6,10 +6,14 @@ use super::boxes::Boxes;
 use crate::exact::Rational;
 use crate::truss::{Edit, JointId};
 use num_traits::Signed;
+use std::cmp::Ordering;
 use std::collections::HashMap;
 
 /// Pairs that may be compared for each joint and member of the truss before the search is given up.
 const PAIRS_EACH: usize = 64;
+
+/// An exact distance counts as so many comparisons.
+const EXACT: usize = 64;
 
 /// Joints nearer than the near distance to a member or a joint, but not on it.
 pub(crate) fn nearly_meeting(frame: &Frame, boxes: &Boxes) -> Vec<Finding> {
@@ -39,7 +43,7 @@ fn near_joints(frame: &Frame, tally: &mut Tally, left: &mut usize) {
             if *left == 0 || tally.is_full() {
                 return;
             }
-            *left -= 1;
+            *left = left.saturating_sub(EXACT / 8);
             let quadrance = frame.lattice.displacement([other, joint]).quadrance();
             if frame.is_near(&quadrance, &[joint, other]) {
                 tally.add(|rule, level| two_joints(frame, other.min(joint), other.max(joint), &quadrance, rule, level));
@@ -68,10 +72,9 @@ fn near_members(frame: &Frame, boxes: &Boxes, tally: &mut Tally, left: &mut usiz
         let [x, y] = frame.lattice.coarse(joint);
         let mut near: Vec<u32> = Vec::new();
         boxes.touching([x - reach, y - reach, x + reach, y + reach], |member| {
-            *left = left.saturating_sub(1);
-            if !is_part(frame, joint, member as usize)
-                && !frame.lattice.is_beyond(joint, frame.ends[member as usize], &frame.reach)
-            {
+            let is_near = is_beside(frame, joint, member as usize);
+            *left = left.saturating_sub(if is_near { EXACT } else { 1 });
+            if is_near {
                 near.push(member);
             }
             *left > 0
@@ -88,6 +91,14 @@ fn near_members(frame: &Frame, boxes: &Boxes, tally: &mut Tally, left: &mut usiz
             return;
         }
     }
+}
+
+/// True when a joint may be near a member, but is neither at its end nor on its line. Quick.
+fn is_beside(frame: &Frame, joint: usize, member: usize) -> bool {
+    let [a, b] = frame.ends[member];
+    !is_part(frame, joint, member)
+        && !frame.lattice.is_beyond(joint, [a, b], &frame.reach)
+        && frame.lattice.turn([a, b], [a, joint]) != Ordering::Equal
 }
 
 fn with_ends(frame: &Frame, joint: usize, member: usize) -> [usize; 3] {
