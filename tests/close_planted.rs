@@ -31,8 +31,8 @@ fn slips_are_excluded() {
     let start = std::time::Instant::now();
     let mut counts = std::collections::BTreeMap::<String, usize>::new();
     for shape in SHAPES {
-        for panels in [4, 7, 10, 14] {
-            for seed in 0..5 {
+        for panels in [4, 5, 6, 7, 8, 9, 10, 12, 14] {
+            for seed in 0..12 {
                 let planted = clean(shape, panels, seed);
                 let mut dice = Dice::new(seed + 1000 * panels as u64);
                 let figure = dice.below(planted.truss.figures.len());
@@ -40,20 +40,14 @@ fn slips_are_excluded() {
                 let truss = slip(&planted.truss, figure, &by);
                 let at = std::time::Instant::now();
                 let (answer, _) = close(&truss, &Effort::default());
-                *counts
-                    .entry(format!(
-                        "{} {}",
-                        answer.state.name(),
-                        if answer.state == CloseState::DoesNotClose { &answer.summary } else { "" }
-                    ))
-                    .or_default() += 1;
-                if answer.state == CloseState::NotSettled {
-                    println!(
-                        "{shape:?} {panels} {seed}: {:?} by {by}: {} {:?}",
-                        truss.figures[figure].kind,
-                        answer.summary,
-                        at.elapsed()
-                    );
+                *counts.entry(format!("{} {}", answer.state.name(), if answer.state == CloseState::DoesNotClose { &answer.summary } else { "" })).or_default() += 1;
+                let place = answer.suspects.iter().position(|s| s.figure.index() == figure);
+                *counts.entry(format!("place {place:?}")).or_default() += 1;
+                if place != Some(0) {
+                    for s in &answer.suspects {
+                        if false { println!("   {:?} implied {} range {} {} slip {:?}", truss.figures[s.figure.index()].kind, s.implied, s.implied_range.lo(), s.implied_range.hi(), s.slip); }
+                    }
+                    if place.is_none() || answer.state != CloseState::DoesNotClose { println!("{shape:?} {panels} {seed}: {:?} by {by}: {} {:?}", truss.figures[figure].kind, answer.summary, at.elapsed()); }
                 }
             }
         }

@@ -12,13 +12,16 @@
 
 mod degrees;
 mod exclusion;
+mod implied;
 mod meaning;
 mod misfits;
 mod proposal;
 mod readings;
 mod search;
 mod sides;
+mod slips;
 mod strings;
+mod suspects;
 mod trial;
 mod verify;
 mod words;
@@ -139,7 +142,10 @@ fn loose_joints(truss: &Truss, effort: &Effort) -> (CloseAnswer, Vec<Finding>) {
             exclusion::Certificate::Polygon { .. } => "polygon",
             exclusion::Certificate::Stress(_) => "stress",
         };
-        return (answer(CloseState::DoesNotClose, Proof::Exclusion, kind), Vec::new());
+        let mut a = answer(CloseState::DoesNotClose, Proof::Exclusion, kind);
+        let blame = suspects::blame(&problem, &trial, &start, &mut |_| true);
+        a.suspects = blame.singles.iter().map(|x| x.suspect.clone()).collect();
+        return (a, Vec::new());
     }
     let mut found = match &trial.layout {
         Some(_) => answer(CloseState::Closes, Proof::Layout, format!("{count} figures, every one checked")),

@@ -143,11 +143,19 @@ impl<'t> Problem<'t> {
 impl Base {
     fn new(truss: &Truss, conditions: &[Vec<Condition>], disregarded: &[FigureId]) -> Base {
         let model = Model::new(truss, conditions, disregarded);
-        let kept = |figure: usize| !disregarded.contains(&FigureId::new(figure));
-        let rows = rows(&model, conditions, &kept);
+        // Rows of disregarded figures stay: their own ranges are asked for.
+        let rows = rows(&model, conditions, &|_| true);
         let mut network = Network::new(model.float_offsets(), model.unknowns, rows);
         network.least_half = least_half(truss, &model);
         Base { model, network }
+    }
+
+    /// Exact places as float unknowns.
+    pub(crate) fn floats_of(&self, places: &[Point]) -> Vec<f64> {
+        let (origin, scale) = (&self.model.origin, &self.model.scale);
+        let float = |p: &Point| [to_float(&((&p.x - &origin.x) / scale)), to_float(&((&p.y - &origin.y) / scale))];
+        let places: Vec<[f64; 2]> = places.iter().map(float).collect();
+        self.model.unknowns_from(&self.network.offsets, &places)
     }
 
     /// True when a row takes part in a trial.

@@ -127,6 +127,12 @@ impl Pattern {
 }
 
 impl Factor<'_> {
+    /// The logarithm of the matrix's determinant.
+    pub(crate) fn log_determinant(&self) -> f64 {
+        let starts = &self.pattern.starts[..self.pattern.size];
+        2.0 * starts.iter().map(|&start| self.numbers[start].ln()).sum::<f64>()
+    }
+
     /// Solves `A x = b`.
     pub(crate) fn solve(&self, b: &[f64]) -> Vec<f64> {
         let pattern = self.pattern;

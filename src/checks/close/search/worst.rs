@@ -99,7 +99,7 @@ impl Network {
             if gained.abs() < 1e-10 && strayed < 1e-9 {
                 break;
             }
-            reach *= if strayed > 1e-6 { 0.5 } else { 1.0 };
+            reach *= if strayed > self.least_half { 0.5 } else { 1.5 };
         }
         unknowns
     }

@@ -1,0 +1,125 @@
+//! Figures to blame: each left out in turn, to see whether all the others close.
+//!
+//! A suspect is in the support of every proof that the figures cannot close. So the candidates are the figures that the
+//! least worst overshoot leans on, and each trial that fails narrows them to those that it leans on as well.
+
+use super::implied::{Accused, accused};
+use super::trial::{Problem, Trial};
+use super::{Progress, Stage};
+use crate::truss::FigureId;
+
+/// What was found out about blame.
+pub(crate) struct Blame {
+    /// Single suspects, likeliest first.
+    pub singles: Vec<Accused>,
+    /// Pairs that together are to blame, when no single figure is; likeliest first.
+    pub pairs: Vec<[Accused; 2]>,
+    /// False when the bound of work was reached, or the search was stopped.
+    pub complete: bool,
+}
+
+/// Pairs that are looked for before it is enough.
+const ENOUGH_PAIRS: usize = 6;
+/// Figures of a proof that are tried as the first, and as the second, of a pair.
+const PAIR_WIDTH: usize = 24;
+
+/// Leaves figures out one by one, then two by two.
+pub(crate) fn blame(
+    problem: &Problem,
+    trial: &Trial,
+    start: &[[f64; 2]],
+    watch: &mut dyn FnMut(Progress) -> bool,
+) -> Blame {
+    let mut blame = Blame { singles: Vec::new(), pairs: Vec::new(), complete: true };
+    let mut candidates = leaning_figures(problem, &[], trial);
+    candidates.truncate(problem.effort.trials);
+    let mut failed: Vec<(FigureId, Trial)> = Vec::new();
+    let mut done = 0;
+    while let Some(id) = next(&mut candidates) {
+        done += 1;
+        if !watch(Progress { stage: Stage::Suspects, done, of: done + candidates.len() }) {
+            blame.complete = false;
+            break;
+        }
+        let without = problem.trial(&[id], start);
+        match &without.layout {
+            Some(_) => blame.singles.extend(accused(problem, id, &[], &without)),
+            None => {
+                let leaning = leaning_figures(problem, &[id], &without);
+                if !leaning.is_empty() {
+                    candidates.retain(|candidate| leaning.contains(candidate));
+                }
+                failed.push((id, without));
+            }
+        }
+    }
+    put_in_order(&mut blame.singles);
+    if blame.singles.is_empty() && blame.complete {
+        pairs(problem, failed, start, watch, &mut blame);
+    }
+    blame
+}
+
+fn next(candidates: &mut Vec<FigureId>) -> Option<FigureId> {
+    (!candidates.is_empty()).then(|| candidates.remove(0))
+}
+
+/// Those explained by a slip first, then by how likely and how far outside they are. A slip that explains only a less
+/// likely figure than one without is taken for chance, and not told.
+fn put_in_order(singles: &mut [Accused]) {
+    singles.sort_by(|a, b| {
+        b.worth.total_cmp(&a.worth).then(b.outside.total_cmp(&a.outside)).then(a.suspect.figure.cmp(&b.suspect.figure))
+    });
+    let leading = singles.iter().take_while(|accused| accused.suspect.slip.is_some()).count();
+    singles[leading..].iter_mut().for_each(|accused| accused.suspect.slip = None);
+}
+
+/// The figures that a trial leans on, heaviest first.
+pub(crate) fn leaning_figures(problem: &Problem, disregarded: &[FigureId], trial: &Trial) -> Vec<FigureId> {
+    let Some(best) = &trial.best else { return Vec::new() };
+    let mut figures = Vec::new();
+    for (source, _) in problem.leaning(disregarded, best) {
+        if !figures.contains(&source.figure) {
+            figures.push(source.figure);
+        }
+    }
+    figures
+}
+
+/// For each figure that alone does not help, the figures that the rest still leans on.
+fn pairs(
+    problem: &Problem,
+    failed: Vec<(FigureId, Trial)>,
+    start: &[[f64; 2]],
+    watch: &mut dyn FnMut(Progress) -> bool,
+    blame: &mut Blame,
+) {
+    let mut tried = Vec::new();
+    for (first, without) in failed.iter().take(PAIR_WIDTH) {
+        for second in leaning_figures(problem, &[*first], without).into_iter().take(PAIR_WIDTH) {
+            let pair = [*first.min(&second), *first.max(&second)];
+            if tried.contains(&pair) {
+                continue;
+            }
+            tried.push(pair);
+            let goes_on = watch(Progress { stage: Stage::Suspects, done: tried.len(), of: problem.effort.trials });
+            if !goes_on || tried.len() > problem.effort.trials {
+                blame.complete = false;
+                return;
+            }
+            let without = problem.trial(&pair, start);
+            if without.layout.is_some() {
+                let one = |id: FigureId| accused(problem, id, &pair, &without);
+                if let (Some(a), Some(b)) = (one(pair[0]), one(pair[1])) {
+                    blame.pairs.push([a, b]);
+                }
+            }
+            if blame.pairs.len() >= ENOUGH_PAIRS {
+                blame.complete = false;
+                return;
+            }
+        }
+    }
+    let worth = |pair: &[Accused; 2]| pair[0].worth + pair[1].worth;
+    blame.pairs.sort_by(|a, b| worth(b).total_cmp(&worth(a)));
+}
