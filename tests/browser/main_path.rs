@@ -43,7 +43,7 @@ fn a_demonstration_is_opened_and_answered_and_nothing_leaves_the_page() {
 #[test]
 #[ignore = "needs the built page and Chromium: cargo verify"]
 fn the_faults_of_a_faulty_drawing_are_shown_with_their_evidence() {
-    let page = with_demo(3);
+    let page = with_demo(4);
     assert!(page.text(CLOSE).contains("They do not"));
     page.wait_for_text(".evidence", "9′-7 13/16″");
     page.click(".finding-head");
@@ -55,6 +55,26 @@ fn the_faults_of_a_faulty_drawing_are_shown_with_their_evidence() {
     assert!(page.count(".board path.lit.fault") > 0, "the crossing is shown on the board");
     page.click(STANDS);
     page.wait_for(".board path.motion");
+    page.assert_quiet();
+}
+
+#[test]
+#[ignore = "needs the built page and Chromium: cargo verify"]
+fn the_one_wrong_figure_is_found_and_its_value_taken() {
+    let page = with_demo(2);
+    assert!(page.text(CLOSE).contains("They do not"));
+    page.wait_for_text(".evidence", "f34");
+    page.wait_for_text(".evidence", "should read");
+    page.wait_for_text(".evidence", "one foot");
+    page.wait_for_text("#board .struck", "8′-0 7/8″");
+    page.wait_for_text("#board .mend", "7′-0 7/8″");
+    page.screenshot("suspect-wide-light", Window::WIDE, Scheme::Light);
+    page.click(".evidence .mend .main");
+    answered(&page);
+    page.wait_for_text(CLOSE, "They close");
+    page.wait_for_text("#shown", "layout");
+    page.press("k");
+    page.wait_for_text("#shown", "sketch");
     page.assert_quiet();
 }
 
@@ -106,7 +126,7 @@ fn a_link_brings_exactly_the_same_truss_to_another_browser() {
 #[test]
 #[ignore = "needs the built page and Chromium: cargo verify"]
 fn a_damaged_link_is_told_and_leaves_the_work_alone() {
-    let page = with_demo(2);
+    let page = with_demo(3);
     let before = page.text(".fingerprint");
     page.run("location.hash = '#1AAAA'", &[]);
     page.wait_for_text(".message-line", "damaged");

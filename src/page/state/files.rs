@@ -19,11 +19,16 @@ pub struct Demo {
 }
 
 /// The demonstrations of the first screen.
-pub const DEMOS: [Demo; 3] = [
+pub const DEMOS: [Demo; 4] = [
     Demo {
         name: "Boathouse roof",
         words: "feet and inches, fully figured, and right",
         text: include_str!("../../../demo/boathouse-roof.truss.json"),
+    },
+    Demo {
+        name: "Boathouse roof, first issue",
+        words: "sketched, figured, and one figure is wrong",
+        text: include_str!("../../../demo/boathouse-first-issue.truss.json"),
     },
     Demo {
         name: "Mill stream footbridge",

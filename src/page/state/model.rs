@@ -91,7 +91,7 @@ pub enum Shown {
     /// The joints as they are entered.
     #[default]
     Sketch,
-    /// The layout that proves that the figures close.
+    /// The places that the answers are about: the layout, where there is one.
     Layout,
     /// The layout without one suspect, by its place among the suspects.
     Without(usize),
@@ -249,7 +249,7 @@ impl State {
     pub fn points(&self) -> Vec<Point> {
         let layout = self.fresh().and_then(|checked| match self.shown {
             Shown::Sketch => None,
-            Shown::Layout => checked.report.answers.close.layout.clone(),
+            Shown::Layout => Some(checked.report.points.clone()),
             Shown::Without(index) => checked.report.answers.close.suspects.get(index).map(|s| s.layout.clone()),
         });
         layout.filter(|points| points.len() == self.truss.joints.len()).unwrap_or_else(|| self.truss.points())

@@ -127,13 +127,22 @@ fn caption(state: &State) -> String {
     }
     match state.shown {
         Shown::Sketch => "Showing your sketch".into(),
-        Shown::Layout => "Showing the layout that closes".into(),
+        Shown::Layout => layout_caption(state),
         Shown::Without(index) => {
             let suspect = state.fresh().and_then(|checked| checked.report.answers.close.suspects.get(index));
             suspect.map_or_else(String::new, |s| {
                 format!("Showing the layout without {}", state.truss.figure(s.figure).mark)
             })
         }
+    }
+}
+
+/// The layout that is shown: the proof, or the one without the only suspect.
+fn layout_caption(state: &State) -> String {
+    let close = state.fresh().map(|checked| &checked.report.answers.close);
+    match close.map(|close| (close.layout.is_some(), close.suspects.as_slice())) {
+        Some((false, [only])) => format!("Showing the layout without {}", state.truss.figure(only.figure).mark),
+        _ => "Showing the layout that closes".into(),
     }
 }
 
