@@ -57,7 +57,7 @@ impl<'a> Frame<'a> {
         let mut supported = vec![false; truss.joints.len()];
         truss.supports.iter().for_each(|support| supported[support.joint.index()] = true);
         Frame {
-            print: Print::new(truss, step.clone()),
+            print: Print::new(truss, &step),
             reach: lattice.reach(&near),
             places: placed.places,
             truss,
@@ -125,6 +125,11 @@ impl<'a> Frame<'a> {
     pub(crate) fn is_near(&self, square: &Rational, joints: &[usize]) -> bool {
         let Some(floor) = self.floor(joints) else { return false };
         *square > &floor * &floor && !square.is_zero() && *square <= &self.near * &self.near
+    }
+
+    /// The same of a deviation that is known to be near and not zero: worked out only where it has to exceed a step.
+    pub(crate) fn is_near_or_set(&self, square: impl Fn() -> Rational, joints: &[usize]) -> bool {
+        self.floor(joints).is_some_and(|floor| floor.is_zero() || self.is_near(&square(), joints))
     }
 
     /// A joint mark that is still free.

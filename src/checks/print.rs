@@ -1,84 +1,71 @@
 //! How the checks write lengths, slopes and lists of marks.
 
-use crate::exact::{Point, Rational, Surd, Vector, nearest_multiple, ratio, whole};
-use crate::measure::Unit;
+use crate::exact::{Point, Rational, Vector, whole};
+use crate::measure::Sheet;
 use crate::truss::{JointId, MemberId, Truss};
 use num_bigint::BigInt;
 use num_integer::Integer;
-use num_traits::{Signed, ToPrimitive, Zero};
 
 /// Prints for one sheet.
 #[derive(Clone, Debug)]
 pub(crate) struct Print<'a> {
     truss: &'a Truss,
-    step: Rational,
+    sheet: Sheet,
 }
 
 /// Marks listed before the rest is only counted.
 const LISTED: usize = 12;
 
+/// A root to the nearest step, and whether it is exact.
+#[derive(Clone, Debug)]
+pub(crate) struct Root {
+    /// The rounded length.
+    pub(crate) length: Rational,
+    /// True when nothing was rounded.
+    pub(crate) exact: bool,
+}
+
 impl<'a> Print<'a> {
     /// Prints for this sheet, to this step where the sheet has none.
-    pub(crate) fn new(truss: &'a Truss, near_step: Rational) -> Print<'a> {
-        Print { truss, step: near_step }
+    pub(crate) fn new(truss: &'a Truss, near_step: &Rational) -> Print<'a> {
+        Print { truss, sheet: Sheet::of(truss.unit, near_step) }
     }
 
-    /// A length in the sheet's unit, as the trade writes it.
+    /// The sheet.
+    pub(crate) fn sheet(&self) -> &Sheet {
+        &self.sheet
+    }
+
+    /// A length in a sentence, as the trade writes it; with the unit on metric sheets.
     pub(crate) fn length(&self, value: &Rational) -> String {
-        let steps = nearest_multiple(value, &self.step).unwrap_or_default();
-        self.steps(&steps)
-    }
-
-    /// A root as a length, and whether it is exact.
-    pub(crate) fn surd(&self, length: &Surd) -> (String, bool) {
-        match length.nearest(&self.step) {
-            Some(rounded) => (self.steps(&rounded.steps), rounded.exact),
-            None => (length.to_string(), true),
-        }
+        let text = self.sheet.length(value);
+        if self.truss.unit.is_imperial() { text } else { format!("{text} {}", self.truss.unit.symbol()) }
     }
 
     /// The printing step.
     pub(crate) fn step(&self) -> &Rational {
-        &self.step
+        self.sheet.step()
     }
 
-    /// The root of a quadrance as a length.
+    /// The root of a quadrance to the nearest step, correctly rounded; a tie goes up.
+    pub(crate) fn rounded_root(&self, quadrance: &Rational) -> Root {
+        // floor(x + 1/2) = floor((floor(2x) + 1) / 2), and floor(2x) is an integer root.
+        let (up, down) = (self.step().denom(), self.step().numer());
+        let (above, below) = (quadrance.numer() * up * up, quadrance.denom() * down * down);
+        let twice = (&above * 4u32).div_floor(&below).sqrt();
+        let steps = (twice + 1u32).div_floor(&BigInt::from(2));
+        let exact = &steps * &steps * below == above;
+        Root { length: self.step() * whole(steps), exact }
+    }
+
+    /// The root of a quadrance as a length in a sentence.
     pub(crate) fn root(&self, quadrance: &Rational) -> String {
-        Surd::of_quadrance(quadrance).map(|length| self.surd(&length).0).unwrap_or_default()
-    }
-
-    fn steps(&self, steps: &BigInt) -> String {
-        let value = &self.step * Rational::from_integer(steps.clone());
-        if !self.truss.unit.is_imperial() {
-            return format!("{value} {}", self.truss.unit.symbol());
-        }
-        let inches = value * self.truss.unit.in_units_of(Unit::In);
-        let sign = if inches.is_negative() { "-" } else { "" };
-        let inches = inches.abs();
-        let (feet, rest) = inches.to_integer().div_rem(&BigInt::from(12));
-        let part = inches.fract();
-        let part = if part.is_zero() { String::new() } else { format!(" {part}") };
-        format!("{sign}{feet}'-{rest}{part}\"")
-    }
-
-    /// The smaller leg in 12 of the larger (metric: in 1000), to a sixteenth (metric: to 1); with its sense.
-    pub(crate) fn bevel(&self, run: &Rational, rise: &Rational) -> String {
-        let (base, step) =
-            if self.truss.unit.is_imperial() { (whole(12), ratio(1, 16)) } else { (whole(1000), whole(1)) };
-        let (small, large) = if run.abs() < rise.abs() { (run.abs(), rise.abs()) } else { (rise.abs(), run.abs()) };
-        if large.is_zero() {
-            return String::new();
-        }
-        let steps = nearest_multiple(&(small / large * &base), &step).unwrap_or_default();
-        let leg = step * Rational::from_integer(steps);
-        if run.abs() < rise.abs() { format!("{base}:{leg}") } else { format!("{leg}:{base}") }
+        self.length(&self.rounded_root(quadrance).length)
     }
 
     /// The angle from the direction `v` counter-clockwise to `w`, in degrees.
     pub(crate) fn degrees(&self, v: &Vector, w: &Vector) -> String {
-        let (cross, dot) = (v.cross(w).to_f64().unwrap_or(0.0), v.dot(w).to_f64().unwrap_or(0.0));
-        let degrees = cross.atan2(dot).to_degrees();
-        format!("{:.2}", if degrees < 0.0 { degrees + 360.0 } else { degrees })
+        self.sheet.turn_degrees(v, w)
     }
 
     /// A place, exactly, in the sheet's unit.
@@ -88,7 +75,7 @@ impl<'a> Print<'a> {
 
     /// A quadrance with its unit.
     pub(crate) fn area(&self, quadrance: &Rational) -> String {
-        format!("{quadrance} {}²", self.truss.unit.symbol())
+        self.sheet.quadrance(quadrance)
     }
 
     /// The mark of a joint.

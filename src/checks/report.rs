@@ -8,14 +8,17 @@ use super::frame::Frame;
 use super::limits::Limits;
 use super::placed::Placed;
 use super::{clear, cut, lines, stands};
-use crate::truss::Truss;
+use crate::truss::{JointId, Truss};
 
 /// Asks the five questions of a truss.
 ///
 /// The geometric questions are asked of the layout where closing proved one, of the joints as given otherwise. The
-/// truss is taken to have no [`Truss::problems`]; one that has them may be answered wrongly, but a joint that is not
+/// truss is taken to have no [`Truss::problems`]; one that has them may be answered wrongly; one that names a joint that is not
 /// there gives an empty report instead of an error.
 pub fn report(truss: &Truss, limits: &Limits) -> Report {
+    if !is_whole(truss) {
+        return report(&Truss::default(), limits);
+    }
     let (close, mut found) = close(truss, &Effort::default());
     let placed = match &close.layout {
         Some(layout) if layout.len() == truss.joints.len() => Placed::at_layout(truss, layout.clone()),
@@ -32,6 +35,14 @@ pub fn report(truss: &Truss, limits: &Limits) -> Report {
     sort(&mut found);
     let answers = Answers { close, lines, clear, stands, cut };
     Report { answers, findings: found, places: placed.places, points: placed.points }
+}
+
+/// True when every joint that is named is there.
+fn is_whole(truss: &Truss) -> bool {
+    let is_there = |joint: JointId| joint.index() < truss.joints.len();
+    truss.members.iter().all(|member| member.ends().into_iter().all(is_there))
+        && truss.supports.iter().all(|support| is_there(support.joint))
+        && truss.figures.iter().all(|figure| figure.kind.joints().into_iter().all(is_there))
 }
 
 /// By question, worst first, then by rule; within a rule as they were found, which is the order of the lists.

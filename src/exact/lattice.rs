@@ -219,6 +219,12 @@ impl<'a> Lattice<'a> {
         exceeds(&v.cross(&w), &w.over, &v.dot(&v), reach)
     }
 
+    /// Compares the distances of two points from the line through a pair.
+    pub fn compare_offsets(&self, [a, b]: [usize; 2], c: usize, d: usize) -> Ordering {
+        let (v, to_c, to_d) = (self.unreduced([a, b]), self.unreduced([a, c]), self.unreduced([a, d]));
+        (v.cross(&to_c).abs() * &to_d.over).cmp(&(v.cross(&to_d).abs() * &to_c.over))
+    }
+
     /// True when the end of the shorter of two legs at a corner is farther than `reach` from where the corner would be
     /// square (never said when a leg has no length).
     pub fn is_far_from_square(&self, at: usize, a: usize, b: usize, reach: &Reach) -> bool {

@@ -5,7 +5,6 @@ use super::super::frame::{Frame, Tally, joint_ids, member_ids, next_mark};
 use super::boxes::{Box4, Boxes};
 use super::sweep::{properly_cross, sweep};
 use crate::exact::{Orientation, Point, is_between};
-use crate::measure::Written;
 use crate::truss::{Edit, Joint, JointId, Member, MemberId};
 
 /// How two members meet where they should not.
@@ -178,8 +177,8 @@ fn joined(frame: &Frame, s: usize, t: usize, point: &Point) -> Edit {
     let new_joint = JointId::new(frame.joint_count());
     let joint = Joint {
         mark: frame.free_joint_mark().into(),
-        x: Written::plain(point.x.clone()),
-        y: Written::plain(point.y.clone()),
+        x: frame.print.sheet().written(&point.x),
+        y: frame.print.sheet().written(&point.y),
         loose: [frame.ends[s], frame.ends[t]].concat().iter().any(|&end| !frame.is_set(end)),
     };
     let mut edits = vec![Edit::AddJoint(joint)];

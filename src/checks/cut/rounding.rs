@@ -3,7 +3,7 @@
 use super::super::chains::Chain;
 use super::super::findings::{Finding, Law, Level, Rule};
 use super::super::frame::{Frame, Tally, joint_ids, member_ids};
-use crate::exact::{Rational, Surd};
+use crate::exact::Rational;
 use num_traits::{Signed, Zero};
 
 /// One note for each straight chain of two pieces or more whose printed lengths add up to something else.
@@ -13,11 +13,8 @@ pub(crate) fn roundings(frame: &Frame, chains: &[Chain], lengths: &[Rational]) -
         return Vec::new();
     }
     for chain in chains.iter().filter(|chain| chain.is_straight && chain.members.len() > 1) {
-        let quadrance = frame.lattice.displacement(chain.ends()).quadrance();
-        let overall = Surd::of_quadrance(&quadrance).and_then(|length| length.nearest(frame.print.step()));
-        let Some(overall) = overall.map(|rounded| Rational::from_integer(rounded.steps) * frame.print.step()) else {
-            continue;
-        };
+        let quadrance = frame.lattice.quadrance(chain.ends());
+        let overall = frame.print.rounded_root(&quadrance).length;
         let sum = chain.members.iter().fold(Rational::zero(), |sum, &member| sum + &lengths[member]);
         if sum != overall {
             tally.add(|rule, level| rounding(frame, chain, &sum, &overall, rule, level));

@@ -3,9 +3,8 @@
 use super::super::answers::{JointRow, MemberRow, NeighbourSpread};
 use super::super::clear::neighbours;
 use super::super::frame::{Frame, Spoke};
-use crate::exact::{Rational, Surd, Vector};
+use crate::exact::Rational;
 use crate::truss::{JointId, MemberId};
-use num_traits::{Signed, Zero};
 use std::collections::HashMap;
 
 /// One row for each member, and the printed lengths as numbers in the sheet's unit.
@@ -21,24 +20,20 @@ pub(crate) fn member_rows(frame: &Frame) -> (Vec<MemberRow>, Vec<Rational>) {
 
 fn member_row(frame: &Frame, member: usize) -> (MemberRow, Rational) {
     let v = frame.lattice.displacement(frame.ends[member]);
-    let quadrance = v.quadrance();
-    let surd = Surd::of_quadrance(&quadrance);
-    let (length, exact) = surd.as_ref().map(|surd| frame.print.surd(surd)).unwrap_or_default();
-    let rounded = surd.and_then(|surd| surd.nearest(frame.print.step()));
-    let number = rounded.map(|r| Rational::from_integer(r.steps) * frame.print.step()).unwrap_or_default();
-    let upright = Vector { x: v.x.abs(), y: v.y.abs() };
-    let level = Vector { x: crate::exact::whole(1), y: Rational::zero() };
+    let quadrance = frame.lattice.quadrance(frame.ends[member]);
+    let root = frame.print.rounded_root(&quadrance);
+    let sheet = frame.print.sheet();
     let row = MemberRow {
         member: MemberId::new(member),
-        bevel: frame.print.bevel(&v.x, &v.y),
-        degrees: if v.is_null() { String::new() } else { frame.print.degrees(&level, &upright) },
+        bevel: sheet.bevel(&v.x, &v.y),
+        degrees: sheet.slope_degrees(&v.x, &v.y),
         run: v.x,
         rise: v.y,
         quadrance,
-        length,
-        exact,
+        length: sheet.length(&root.length),
+        exact: root.exact,
     };
-    (row, number)
+    (row, root.length)
 }
 
 /// Two displacements in lattice steps.

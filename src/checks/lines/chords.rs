@@ -19,11 +19,12 @@ pub(crate) fn nearly_straight(frame: &Frame, chains: &[Chain], doubts: &mut Doub
         if off.is_empty() || doubts.all(&off) || off.iter().any(|&j| frame.lattice.is_beyond(j, base, &frame.reach)) {
             continue;
         }
-        let squares: Vec<(usize, Rational)> = off.iter().map(|&joint| (joint, offset(frame, base, joint))).collect();
-        let means = |(joint, square): &&(usize, Rational)| frame.is_near(square, &[*joint, base[0], base[1]]);
-        let Some((worst, square)) = squares.iter().filter(means).max_by(|a, b| a.1.cmp(&b.1)) else { continue };
+        let means = |&&joint: &&usize| frame.is_near_or_set(|| offset(frame, base, joint), &[joint, base[0], base[1]]);
+        let farther = |&&a: &&usize, &&b: &&usize| frame.lattice.compare_offsets(base, a, b);
+        let Some(&worst) = off.iter().filter(means).max_by(farther) else { continue };
+        let square = offset(frame, base, worst);
         doubts.mark(off.iter().copied());
-        tally.add(|rule, level| straight(frame, chain, base, &off, (*worst, square), rule, level));
+        tally.add(|rule, level| straight(frame, chain, base, &off, (worst, &square), rule, level));
     }
     tally.finish()
 }

@@ -26,10 +26,12 @@ pub(crate) fn nearly_square(frame: &Frame, doubts: &Doubts) -> Vec<Finding> {
 
 fn one_corner(frame: &Frame, at: usize, s: Spoke, t: Spoke, tally: &mut Tally) {
     let (a, b) = (s.far as usize, t.far as usize);
-    let [v, w] = [[at, a], [at, b]].map(|pair| frame.lattice.displacement(pair));
-    let dot = v.dot(&w);
-    let square = &dot * &dot / v.quadrance().max(w.quadrance());
-    if !frame.is_near(&square, &[at, a, b]) || ![[at, a], [at, b]].iter().all(|&pair| is_long(frame, pair)) {
+    let square = || {
+        let [v, w] = [[at, a], [at, b]].map(|pair| frame.lattice.displacement(pair));
+        let dot = v.dot(&w);
+        &dot * &dot / v.quadrance().max(w.quadrance())
+    };
+    if !frame.is_near_or_set(square, &[at, a, b]) || ![[at, a], [at, b]].iter().all(|&pair| is_long(frame, pair)) {
         return;
     }
     let members = [s.member as usize, t.member as usize];
@@ -38,7 +40,7 @@ fn one_corner(frame: &Frame, at: usize, s: Spoke, t: Spoke, tally: &mut Tally) {
             "{} are almost square at {}: {} off at the end of the shorter.",
             frame.print.members(members),
             frame.print.joint(at),
-            deviation(frame, &square)
+            deviation(frame, &square())
         );
         let finding = Finding::new(rule, level, text).joints(joint_ids([at])).members(member_ids(members));
         pythagoras(frame, finding, [at, a, b])

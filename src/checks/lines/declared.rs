@@ -43,7 +43,7 @@ type Check = fn(&Frame, &[usize]) -> Option<(Finding, Vec<usize>)>;
 fn in_line(frame: &Frame, joints: &[usize]) -> Option<(Finding, Vec<usize>)> {
     let base = best_line(frame, joints)?;
     let off = off_line(frame, base, joints);
-    let &worst = off.iter().max_by(|&&a, &&b| offset(frame, base, a).cmp(&offset(frame, base, b)))?;
+    let &worst = off.iter().max_by(|&&a, &&b| frame.lattice.compare_offsets(base, a, b))?;
     let print = &frame.print;
     let [first, last] = base;
     let text = format!(

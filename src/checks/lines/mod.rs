@@ -94,6 +94,6 @@ pub(crate) fn deviation(frame: &Frame, square: &Rational) -> String {
 
 /// True when a line is long enough to be asked whether it is almost level, square or parallel.
 pub(crate) fn is_long(frame: &Frame, pair: [usize; 2]) -> bool {
-    let least = &frame.near * whole(SHORT);
-    frame.lattice.quadrance(pair) > &least * &least
+    let least = frame.reach.steps().saturating_mul(SHORT);
+    frame.lattice.coarse_along(pair).iter().any(|steps| steps.abs() > least)
 }

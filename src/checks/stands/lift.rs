@@ -74,7 +74,7 @@ fn lift_in<T: Whole>(matrix: &Matrix, factor: &Factor, free: usize, most_work: u
     let mut digits = vec![factor.motion(free)];
     let mut residual: Vec<T> = vec![T::zero(); matrix.rows.len()];
     let mut next_try = 1;
-    let cost = 8 * (factor.size() + matrix.rows.len());
+    let cost = 8 * (factor.size() + matrix.rows.len() * words(matrix));
     loop {
         if digits.len() == next_try {
             if let Some(found) = whole_velocities(matrix, factor, &digits) {
@@ -88,6 +88,15 @@ fn lift_in<T: Whole>(matrix: &Matrix, factor: &Factor, free: usize, most_work: u
         residual = quotient(matrix, factor, &parts, residual, &digits[digits.len() - 1])?;
         digits.push(mend(matrix, factor, &residual));
     }
+}
+
+/// The work on a row in machine words, by the longest direction.
+fn words(matrix: &Matrix) -> usize {
+    let bits = matrix.rows.iter().map(|row| match &row.direction {
+        Direction::Short(_) => 0,
+        Direction::Long([x, y]) => x.bits().max(y.bits()),
+    });
+    1 + bits.max().unwrap_or(0) as usize / 16
 }
 
 /// (residual + R digit) / p; `None` when that is not whole, so that the prime was unlucky.

@@ -29,8 +29,7 @@ pub(crate) fn loose_reason(frame: &Frame, matrix: &Matrix, velocities: &Velociti
             [only] => {
                 return Some(format!(" Only {} reaches {mark}: it swings.", frame.print.member(only.member as usize)));
             }
-            [first, ..] if all_in_line(frame, joint) => {
-                let _ = first;
+            _ if all_in_line(frame, joint) => {
                 return Some(format!(" All members at {mark} lie in one line: nothing stops it square to them."));
             }
             _ => {}
