@@ -40,16 +40,54 @@ fn slips_are_excluded() {
                 let truss = slip(&planted.truss, figure, &by);
                 let at = std::time::Instant::now();
                 let (answer, _) = close(&truss, &Effort::default());
-                *counts.entry(format!("{} {}", answer.state.name(), if answer.state == CloseState::DoesNotClose { &answer.summary } else { "" })).or_default() += 1;
+                *counts
+                    .entry(format!(
+                        "{} {}",
+                        answer.state.name(),
+                        if answer.state == CloseState::DoesNotClose { &answer.summary } else { "" }
+                    ))
+                    .or_default() += 1;
                 let place = answer.suspects.iter().position(|s| s.figure.index() == figure);
                 *counts.entry(format!("place {place:?}")).or_default() += 1;
                 if place != Some(0) {
                     for s in &answer.suspects {
-                        if false { println!("   {:?} implied {} range {} {} slip {:?}", truss.figures[s.figure.index()].kind, s.implied, s.implied_range.lo(), s.implied_range.hi(), s.slip); }
+                        if false {
+                            println!(
+                                "   {:?} implied {} range {} {} slip {:?}",
+                                truss.figures[s.figure.index()].kind,
+                                s.implied,
+                                s.implied_range.lo(),
+                                s.implied_range.hi(),
+                                s.slip
+                            );
+                        }
                     }
-                    if place.is_none() || answer.state != CloseState::DoesNotClose { println!("{shape:?} {panels} {seed}: {:?} by {by}: {} {:?}", truss.figures[figure].kind, answer.summary, at.elapsed()); }
+                    if place.is_none() || answer.state != CloseState::DoesNotClose {
+                        println!(
+                            "{shape:?} {panels} {seed}: {:?} by {by}: {} {:?}",
+                            truss.figures[figure].kind,
+                            answer.summary,
+                            at.elapsed()
+                        );
+                    }
                 }
             }
+        }
+    }
+    println!("{counts:?} in {:?}", start.elapsed());
+}
+
+#[test]
+fn mixed_kinds() {
+    use close_help::generate::mixed;
+    let start = std::time::Instant::now();
+    let mut counts = std::collections::BTreeMap::<String, usize>::new();
+    for seed in 0..std::env::var("N").map_or(400, |n| n.parse().unwrap()) {
+        let planted = mixed(seed);
+        let (answer, found) = close(&planted.truss, &Effort::default());
+        *counts.entry(answer.state.name().to_string()).or_default() += 1;
+        if answer.state != CloseState::Closes {
+            println!("{seed}: {} {} {}", answer.state.name(), answer.summary, found.first().map_or("", |f| &f.text));
         }
     }
     println!("{counts:?} in {:?}", start.elapsed());

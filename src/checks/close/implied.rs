@@ -53,9 +53,11 @@ pub(crate) fn accused(problem: &Problem, id: FigureId, others: &[FigureId], tria
     let proposal = proposal(truss, id, &found.value);
     let printed_alike = printed(figure).map_or(0, |v| alike(truss, id, v));
     let worth = evidence + found.worth - REGULARITY * (1.0 + printed_alike as f64).ln();
-    let outside = printed(figure).map_or(Rational::zero(), |v| (range.lo() - v).max(v - range.hi()).max(Rational::zero()));
+    let outside =
+        printed(figure).map_or(Rational::zero(), |v| (range.lo() - v).max(v - range.hi()).max(Rational::zero()));
     let outside = (outside / step).to_f64().unwrap_or(f64::MAX);
-    let suspect = Suspect { figure: id, implied: proposal.text.clone(), implied_range: range, slip: found.slip, layout };
+    let suspect =
+        Suspect { figure: id, implied: proposal.text.clone(), implied_range: range, slip: found.slip, layout };
     Some(Accused { suspect, proposal, outside, worth })
 }
 

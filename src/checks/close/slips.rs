@@ -106,7 +106,11 @@ fn decimal(printed: &Rational, right: &Rational) -> Option<Slip> {
         let (p, r) = (printed * &scale, right * &scale);
         if p.is_integer() && r.is_integer() {
             let (p, r) = (p.to_integer(), r.to_integer());
-            return if p.is_negative() == r.is_negative() { digit_slip(&p.abs().to_string(), &r.abs().to_string()) } else { None };
+            return if p.is_negative() == r.is_negative() {
+                digit_slip(&p.abs().to_string(), &r.abs().to_string())
+            } else {
+                None
+            };
         }
         scale /= ratio(1, 10);
     }

@@ -53,7 +53,8 @@ pub(crate) fn condition_of(conditions: &[Vec<Condition>], source: Source) -> Opt
 impl Frame {
     /// The frame of a stress; `None` when the stress is not well formed or turns what it may not.
     pub(crate) fn new(truss: &Truss, conditions: &[Vec<Condition>], sides: &[Side], stress: &Stress) -> Option<Frame> {
-        let used: Vec<&Condition> = stress.conditions.iter().map(|s| condition_of(conditions, *s)).collect::<Option<_>>()?;
+        let used: Vec<&Condition> =
+            stress.conditions.iter().map(|s| condition_of(conditions, *s)).collect::<Option<_>>()?;
         let sides: Vec<&Side> = stress.sides.iter().map(|index| sides.get(*index)).collect::<Option<_>>()?;
         let joints = joints_of(stress, &used, &sides);
         if !stress.unit.is_positive() || stress.origin.index() >= truss.joints.len() {
@@ -116,7 +117,13 @@ impl Frame {
             Function::Slope { from, to, small, senses } => {
                 let fine = Rational::one() / whole(1i64 << SLOPE_BITS);
                 let span = span_of(range, &fine);
-                Narrowing::Slope { ends: ends(from, to)?, small: small.index(), senses: *senses, lo: span.lo.max(0), hi: span.hi }
+                Narrowing::Slope {
+                    ends: ends(from, to)?,
+                    small: small.index(),
+                    senses: *senses,
+                    lo: span.lo.max(0),
+                    hi: span.hi,
+                }
             }
             Function::LengthDifference { first, second } => Narrowing::Difference {
                 first: ends(&first[0], &first[1])?,
@@ -273,7 +280,13 @@ impl Frame {
         self.sides.iter().all(|([a, b, c], sign)| {
             let (u, v) = (self.way(boxes, *a, *b), self.way(boxes, *a, *c));
             match cross(u, v) {
-                Some(span) => if *sign > 0 { span.hi > 0 } else { span.lo < 0 },
+                Some(span) => {
+                    if *sign > 0 {
+                        span.hi > 0
+                    } else {
+                        span.lo < 0
+                    }
+                }
                 None => true,
             }
         })
@@ -322,7 +335,8 @@ pub(crate) fn length_span(way: Way) -> Span {
 
 fn squares_between(lengths: Span) -> (i128, Option<i128>) {
     let lo = lengths.lo.max(0);
-    let hi = if lengths.is_unbounded() { None } else { Some(if lengths.hi < 0 { -1 } else { lengths.hi * lengths.hi }) };
+    let hi =
+        if lengths.is_unbounded() { None } else { Some(if lengths.hi < 0 { -1 } else { lengths.hi * lengths.hi }) };
     (lo * lo, hi)
 }
 

@@ -24,7 +24,9 @@ pub(crate) fn simple(case: &Case) -> Option<Certificate> {
 
 fn sources(case: &Case) -> impl Iterator<Item = Source> {
     let kept = |figure: &usize| !case.disregarded.contains(&FigureId::new(*figure));
-    let numbered = |figure: usize| (0..case.conditions[figure].len()).map(move |c| Source { figure: FigureId::new(figure), condition: c });
+    let numbered = |figure: usize| {
+        (0..case.conditions[figure].len()).map(move |c| Source { figure: FigureId::new(figure), condition: c })
+    };
     (0..case.conditions.len()).filter(kept).flat_map(numbered)
 }
 

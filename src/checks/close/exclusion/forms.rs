@@ -57,7 +57,8 @@ fn forms_or_none(frame: &Frame, condition: &Condition, boxes: &[Way], unit: &Rat
     let between = |terms: Vec<Term>, lo: Rational, hi: Rational| Some(vec![Form { terms, lo: Some(lo), hi: Some(hi) }]);
     match &condition.function {
         Function::Along { axis, from, to } => {
-            let term = Term { coefficient: Rational::one(), first: ([place(from)?, place(to)?], axis.index()), second: None };
+            let term =
+                Term { coefficient: Rational::one(), first: ([place(from)?, place(to)?], axis.index()), second: None };
             between(vec![term], range.lo() / unit, range.hi() / unit)
         }
         Function::Quadrance { from, to } => {
@@ -69,7 +70,10 @@ fn forms_or_none(frame: &Frame, condition: &Condition, boxes: &[Way], unit: &Rat
         }
         Function::Spread { at, from, to } => {
             let corner = [place(at)?, place(from)?, place(to)?];
-            let cosines = cosines_of_spread(range, dot(frame.way(boxes, corner[0], corner[1]), frame.way(boxes, corner[0], corner[2])))?;
+            let cosines = cosines_of_spread(
+                range,
+                dot(frame.way(boxes, corner[0], corner[1]), frame.way(boxes, corner[0], corner[2])),
+            )?;
             angle_forms(frame, boxes, corner, &cosines)
         }
         Function::Cosine { at, from, to } => angle_forms(frame, boxes, [place(at)?, place(from)?, place(to)?], range),

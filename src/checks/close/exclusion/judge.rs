@@ -9,7 +9,7 @@ use super::boxes::{Frame, Way, condition_of};
 use super::forms::{Form, LegPart, forms, side_form};
 use super::span::Span;
 use super::{Bound, Branch, Certificate, Link, Part, Source, Stress};
-use crate::checks::close::meaning::{Axis, Condition, Function, leg};
+use crate::checks::close::meaning::{Axis, Condition, Function};
 use crate::checks::close::sides::Side;
 use crate::exact::{Interval, Rational, whole};
 use crate::truss::{FigureId, Truss};
@@ -119,8 +119,7 @@ fn polygon_cannot_close(case: &Case, links: &[Link]) -> bool {
         at = link.to;
     }
     let reach: Option<Rational> = others.iter().map(|link| Some(lengths(case, link)?.hi().clone())).sum();
-    at == longest.to
-        && lengths(case, longest).zip(reach).is_some_and(|(longest, reach)| *longest.lo() > reach)
+    at == longest.to && lengths(case, longest).zip(reach).is_some_and(|(longest, reach)| *longest.lo() > reach)
 }
 
 fn stress_cannot_be_met(case: &Case, stress: &Stress) -> bool {
@@ -161,7 +160,11 @@ pub(crate) fn cannot_be_reached(
         return false;
     }
     // The combination is constant + Σ slope · (place - around) + rest.
-    let mut sum = Combination { constant: Rational::zero(), least_rest: Rational::zero(), slopes: vec![[Rational::zero(), Rational::zero()]; around.len()] };
+    let mut sum = Combination {
+        constant: Rational::zero(),
+        least_rest: Rational::zero(),
+        slopes: vec![[Rational::zero(), Rational::zero()]; around.len()],
+    };
     let mut bound = Rational::zero();
     for (part, multiplier) in multipliers {
         let Some(form) = form_of(case, stress, frame, boxes, *part) else { return false };

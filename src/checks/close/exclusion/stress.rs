@@ -63,7 +63,9 @@ fn joints_of(case: &Case, source: Source) -> Vec<JointId> {
 
 fn kept_sources(case: &Case) -> impl Iterator<Item = Source> {
     let kept = |figure: &usize| !case.disregarded.contains(&FigureId::new(*figure));
-    let numbered = |figure: usize| (0..case.conditions[figure].len()).map(move |c| Source { figure: FigureId::new(figure), condition: c });
+    let numbered = |figure: usize| {
+        (0..case.conditions[figure].len()).map(move |c| Source { figure: FigureId::new(figure), condition: c })
+    };
     (0..case.conditions.len()).filter(kept).flat_map(numbered)
 }
 
@@ -88,9 +90,11 @@ fn over(case: &Case, lean: &Lean, joints: &BTreeSet<JointId>, turned: bool) -> O
     if turned && lean.sources.iter().any(directed) {
         return None;
     }
-    let inside = |s: &Source| joints_of(case, *s).iter().all(|joint| joints.contains(joint)) && !(turned && directed(s));
+    let inside =
+        |s: &Source| joints_of(case, *s).iter().all(|joint| joints.contains(joint)) && !(turned && directed(s));
     let conditions: Vec<Source> = kept_sources(case).filter(inside).collect();
-    let sides = (0..case.sides.len()).filter(|&i| case.sides[i].joints.iter().all(|joint| joints.contains(joint))).collect();
+    let sides =
+        (0..case.sides.len()).filter(|&i| case.sides[i].joints.iter().all(|joint| joints.contains(joint))).collect();
     let origin = origin(case, lean, joints)?;
     let turned = if turned { Some(partner(case, &conditions, origin)?) } else { None };
     let unit = lean.scale / Rational::from_integer(BigInt::one() << UNIT_BITS);
@@ -270,7 +274,8 @@ impl Finder<'_> {
             } else {
                 ends.extend([a[0] * b[1], a[1] * b[0]]);
             }
-            let (lo, hi) = ends.iter().fold((f64::INFINITY, f64::NEG_INFINITY), |(lo, hi), e| (lo.min(c * e), hi.max(c * e)));
+            let (lo, hi) =
+                ends.iter().fold((f64::INFINITY, f64::NEG_INFINITY), |(lo, hi), e| (lo.min(c * e), hi.max(c * e)));
             line.rest[0] += lo;
             line.rest[1] += hi;
         }
@@ -300,7 +305,8 @@ impl Finder<'_> {
         }
         let pattern = Pattern::new(unknowns, &touched);
         let slope = vec![0.0; unknowns];
-        let programme = Programme { pattern: &pattern, touched: &touched, strips, slope, overshoot_weight: 1.0, reach: 2.0 };
+        let programme =
+            Programme { pattern: &pattern, touched: &touched, strips, slope, overshoot_weight: 1.0, reach: 2.0 };
         let optimum = programme.solve()?;
         if optimum.overshoot <= 0.0 {
             return None;
@@ -318,7 +324,8 @@ fn whole_multipliers(lines: &[Line], raw: &[f64], weights: &[f64]) -> Option<Vec
     let greatest = lines.iter().zip(weights).map(|(line, w)| in_units(line, *w).abs()).fold(0.0f64, f64::max);
     let scale = 2f64.powi(MULTIPLIER_BITS) / greatest;
     let rounded = lines.iter().zip(raw).zip(weights).filter(|((_, m), _)| m.abs() > 1e-9 * heaviest);
-    let rounded = rounded.map(|((line, _), weight)| Some((line.part, (in_units(line, *weight) * scale).round().to_i128()?)));
+    let rounded =
+        rounded.map(|((line, _), weight)| Some((line.part, (in_units(line, *weight) * scale).round().to_i128()?)));
     rounded.filter(|entry| entry.as_ref().is_none_or(|(_, m)| *m != 0)).collect()
 }
 

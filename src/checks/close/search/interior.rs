@@ -269,7 +269,11 @@ impl<'p> System<'p> {
         // multiplier change = (wanted + multiplier (row change + primal residual)) / slack
         let base = |index: usize, side: usize| {
             let s = state.sides[index][side];
-            if s.multiplier > 0.0 { (wanted(index, side) + s.multiplier * residual.primal[index][side]) / s.slack } else { 0.0 }
+            if s.multiplier > 0.0 {
+                (wanted(index, side) + s.multiplier * residual.primal[index][side]) / s.slack
+            } else {
+                0.0
+            }
         };
         let mut rhs: Vec<f64> = residual.dual.iter().map(|r| -r).collect();
         let mut rhs_t = -residual.dual_t;
@@ -316,7 +320,8 @@ impl<'p> System<'p> {
             let side = |which: usize, change: f64| {
                 let s = state.sides[index][which];
                 let slack = -residual.primal[index][which] - change;
-                let multiplier = if s.multiplier > 0.0 { base(index, which) + s.multiplier / s.slack * change } else { 0.0 };
+                let multiplier =
+                    if s.multiplier > 0.0 { base(index, which) + s.multiplier / s.slack * change } else { 0.0 };
                 Side { slack, multiplier }
             };
             sides.push([side(0, value - room), side(1, -value - room)]);

@@ -32,7 +32,10 @@ pub(crate) struct Row {
 enum Form {
     Along(usize),
     Length,
-    Slope { small: usize, senses: [f64; 2] },
+    Slope {
+        small: usize,
+        senses: [f64; 2],
+    },
     Angle,
     /// The spread's angle may be acute or obtuse.
     Spread,
@@ -103,11 +106,13 @@ impl Row {
         }
         if let Form::Along(axis) = form {
             // Only one coordinate of each joint matters.
-            let kept: Vec<usize> = [axis, 2 + axis].iter().filter_map(|&i| places[i].map(|place| unknowns[place])).collect();
+            let kept: Vec<usize> =
+                [axis, 2 + axis].iter().filter_map(|&i| places[i].map(|place| unknowns[place])).collect();
             let place = |i: usize| if i % 2 == axis { places[i].map(|p| unknowns[p]) } else { None };
             let mut only = kept.clone();
             only.dedup();
-            let moved: Vec<Option<usize>> = (0..4).map(|i| place(i).and_then(|u| only.iter().position(|&k| k == u))).collect();
+            let moved: Vec<Option<usize>> =
+                (0..4).map(|i| place(i).and_then(|u| only.iter().position(|&k| k == u))).collect();
             (unknowns, places) = (only, moved);
         }
         Row { figure, condition: index, form, lo, hi, exact: condition.is_exact(), unknowns, places, joints }
@@ -243,7 +248,9 @@ fn form(condition: &Condition, scale: f64) -> (Form, f64, f64) {
             };
             (Form::Slope { small: small.index(), senses: senses.map(sense) }, lo, hi)
         }
-        Function::Spread { .. } => (Form::Spread, lo.max(0.0).sqrt().min(1.0).asin(), hi.max(0.0).sqrt().min(1.0).asin()),
+        Function::Spread { .. } => {
+            (Form::Spread, lo.max(0.0).sqrt().min(1.0).asin(), hi.max(0.0).sqrt().min(1.0).asin())
+        }
         Function::Cosine { .. } => (Form::Angle, angle(hi), angle(lo)),
         Function::OffLine { .. } => (Form::OffLine, -root(hi), root(hi)),
         Function::OffSquare { .. } => (Form::OffSquare, -root(hi), root(hi)),

@@ -22,7 +22,8 @@ impl Network {
     /// The worst overshoot of the kept rows; exact rows do not count while they are met.
     pub(crate) fn worst(&self, lines: &[Linear], keep: &dyn Fn(usize) -> bool) -> f64 {
         let counted = |i: usize, line: &Linear| !self.rows[i].exact || line.overshoot() > EXACT_ROOM * 100.0;
-        let overshoots = lines.iter().enumerate().filter(|(i, line)| keep(*i) && counted(*i, line)).map(|(_, l)| l.overshoot());
+        let overshoots =
+            lines.iter().enumerate().filter(|(i, line)| keep(*i) && counted(*i, line)).map(|(_, l)| l.overshoot());
         overshoots.fold(f64::NEG_INFINITY, f64::max)
     }
 
@@ -81,8 +82,14 @@ impl Network {
             for (&unknown, g) in self.touched[row].iter().zip(&lines[row].gradient) {
                 slope[unknown] -= sign * g;
             }
-            let programme =
-                Programme { pattern: &self.pattern, touched: &self.touched, strips, slope, overshoot_weight: 0.0, reach };
+            let programme = Programme {
+                pattern: &self.pattern,
+                touched: &self.touched,
+                strips,
+                slope,
+                overshoot_weight: 0.0,
+                reach,
+            };
             let Some(Optimum { changes, .. }) = programme.solve() else { break };
             let next: Vec<f64> = unknowns.iter().zip(&changes).map(|(u, d)| u + d).collect();
             let after = self.linearised(&next);
