@@ -76,3 +76,19 @@ fn slips_are_excluded() {
     }
     println!("{counts:?} in {:?}", start.elapsed());
 }
+
+#[test]
+fn mixed_kinds() {
+    use close_help::generate::mixed;
+    let start = std::time::Instant::now();
+    let mut counts = std::collections::BTreeMap::<String, usize>::new();
+    for seed in 0..std::env::var("N").map_or(400, |n| n.parse().unwrap()) {
+        let planted = mixed(seed);
+        let (answer, found) = close(&planted.truss, &Effort::default());
+        *counts.entry(answer.state.name().to_string()).or_default() += 1;
+        if answer.state != CloseState::Closes {
+            println!("{seed}: {} {} {}", answer.state.name(), answer.summary, found.first().map_or("", |f| &f.text));
+        }
+    }
+    println!("{counts:?} in {:?}", start.elapsed());
+}

@@ -93,8 +93,7 @@ fn every_tier_answers_as_plain_fractions_do() {
     let mut seen = [0; 3];
     for round in 0..120 {
         let kind = KINDS[round % KINDS.len()];
-        let points: Vec<Point> =
-            (0..9).map(|_| Point { x: kind(&mut scatter), y: kind(&mut scatter) }).collect();
+        let points: Vec<Point> = (0..9).map(|_| Point { x: kind(&mut scatter), y: kind(&mut scatter) }).collect();
         for tier in [Tier::Small, Tier::Wide, Tier::Fractions] {
             if let Some(lattice) = Lattice::in_tier(&points, tier) {
                 seen[tier as usize] += 1;

@@ -156,3 +156,100 @@ pub fn slip(truss: &Truss, figure: usize, by: &Rational) -> Truss {
     }
     slipped
 }
+
+/// A few joints with figures of every kind between them, each printed from the truth; two joints are set.
+pub fn mixed(seed: u64) -> Planted {
+    let mut dice = Dice::new(seed.wrapping_add(77));
+    let count = 4 + dice.below(4);
+    let grid = 3;
+    let truth: Vec<Point> = (0..count)
+        .map(|i| {
+            let (column, row) = ((i as i64) / 2, (i as i64) % 2);
+            let jitter = |dice: &mut Dice| q(dice.between(-15 * 16, 15 * 16), 16);
+            Point { x: w(column * 60) + jitter(&mut dice), y: w(row * 70) + jitter(&mut dice) }
+        })
+        .collect();
+    let mut draft = Draft::step("1/16");
+    for (i, point) in truth.iter().enumerate() {
+        let loose = i >= 2;
+        let rough = |v: &Rational, dice: &mut Dice| {
+            Written::plain(if loose { (v + w(dice.between(-4, 4))).round() / w(grid) * w(grid) } else { v.clone() })
+        };
+        let (x, y) = (rough(&point.x, &mut dice), rough(&point.y, &mut dice));
+        draft.0.joints.push(Joint { mark: format!("J{i}"), x, y, loose });
+    }
+    let figures = 2 * count + dice.below(count);
+    for _ in 0..figures {
+        let kind = random_kind(&truth, &mut dice);
+        let own = match kind {
+            FigureKind::Angle { .. } => Some(Written::plain(q(1, 10))),
+            FigureKind::Spread { .. } => Some(Written::plain(q(1, 1000))),
+            _ => None,
+        };
+        let mark = format!("f{}", draft.0.figures.len() + 1);
+        draft.0.figures.push(Figure { mark, kind, step: own });
+    }
+    // Enough to hold every joint, whatever the others say.
+    for i in 2..count {
+        draft = draft.member(&format!("J{}", i - 2), &format!("J{i}")).member(&format!("J{}", i - 1), &format!("J{i}"));
+        for k in [i - 2, i - 1] {
+            let kind = length_kind(&truth, k, i);
+            let mark = format!("f{}", draft.0.figures.len() + 1);
+            draft.0.figures.push(Figure { mark, kind, step: None });
+        }
+    }
+    Planted { truss: draft.truss(), truth }
+}
+
+fn to_step(v: Rational, step: Rational) -> Written {
+    Written::plain(&step * Rational::from_integer(nearest_multiple(&v, &step).expect("a step")))
+}
+
+fn length_kind(truth: &[Point], a: usize, b: usize) -> FigureKind {
+    let leg = &truth[b] - &truth[a];
+    let length = Surd::of_quadrance(&leg.quadrance()).expect("not negative").nearest(&q(1, 16)).expect("a step");
+    let value = Written::plain(q(1, 16) * Rational::from_integer(length.steps));
+    FigureKind::Length { from: JointId::new(a), to: JointId::new(b), value }
+}
+
+fn random_kind(truth: &[Point], dice: &mut Dice) -> FigureKind {
+    use chordwright::exact::{nearest_degrees_of_spread, spread_between};
+    use num_traits::{Signed, Zero};
+    let n = truth.len();
+    let a = dice.below(n);
+    let b = (a + 1 + dice.below(n - 1)) % n;
+    let mut c = (b + 1 + dice.below(n - 1)) % n;
+    if c == a || c == b {
+        c = (0..n).find(|k| *k != a && *k != b).expect("three joints");
+    }
+    let (from, to, at) = (JointId::new(a), JointId::new(b), JointId::new(c));
+    let leg = &truth[b] - &truth[a];
+    let (u, v) = (&truth[a] - &truth[c], &truth[b] - &truth[c]);
+    let sixteenth = || q(1, 16);
+    match dice.below(6) {
+        0 => FigureKind::Run { from, to, value: to_step(leg.x, sixteenth()) },
+        1 => FigureKind::Rise { from, to, value: to_step(leg.y, sixteenth()) },
+        2 if !leg.x.is_zero() && !leg.y.is_zero() => {
+            let (x, y) = (leg.x.abs(), leg.y.abs());
+            let twelve = Written::plain(w(12));
+            let (rise, run) = if y <= x {
+                (to_step(&y * w(12) / &x, sixteenth()), twelve)
+            } else {
+                (twelve, to_step(&x * w(12) / &y, sixteenth()))
+            };
+            FigureKind::Pitch { from, to, rise, run }
+        }
+        3 => {
+            let spread = spread_between(&u, &v).expect("apart");
+            let steps = nearest_degrees_of_spread(&spread, &q(1, 10)).expect("a step").0;
+            let acute = q(1, 10) * Rational::from_integer(steps);
+            let degrees = if u.dot(&v).is_negative() { w(180) - acute } else { acute };
+            FigureKind::Angle { at, from, to, value: Written::plain(degrees) }
+        }
+        4 => {
+            let spread = spread_between(&u, &v).expect("apart");
+            FigureKind::Spread { at, from, to, value: to_step(spread, q(1, 1000)) }
+        }
+        _ => length_kind(truth, a, b),
+    }
+}

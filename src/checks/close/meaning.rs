@@ -4,7 +4,7 @@
 //! |---|---|---|
 //! | run, rise | difference of coordinates | `[v - p/2, v + p/2]` |
 //! | length | quadrance | `[(v - p/2)², (v + p/2)²]`, lower end 0 when `v < p/2` |
-//! | pitch | smaller leg / larger leg as printed, with the sketch's sense | `[(a - p/2)/b, (a + p/2)/b]` |
+//! | pitch | smaller leg / larger leg as printed, with the sketch's sense where it is clear | `[(a - p/2)/b, (a + p/2)/b]` |
 //! | spread | cross² / (Q₁ Q₂) | `[s - p/2, s + p/2]` |
 //! | angle | signed squared cosine: dot·abs(dot) / (Q₁ Q₂), which falls as the angle grows | enclosures of the ends |
 //! | in line, square, parallel | offset² from the line meant | 0 between set joints, else `[0, (p/2)²]` |
@@ -16,14 +16,16 @@
 //! Nothing here knows how places are found. An angle's interval is irrational: `sure` lies inside it, `possible` encloses
 //! it; for every other kind both are the same.
 
-use super::degrees::spread_of_degrees;
-use crate::exact::{Interval, Point, Rational, Vector, ratio, whole};
+use crate::exact::{Interval, Point, Rational, Vector, spread_of_degrees, whole};
 use crate::truss::{Figure, FigureKind, JointId, Truss};
 use num_traits::{One, Signed, Zero};
 use std::cmp::Ordering;
 
 /// Angles are enclosed to this many binary places: far finer than any instrument of the trade.
 pub(crate) const ANGLE_BITS: u32 = 80;
+
+/// A sketch flatter than one in this says nothing about the side: a rough sketch is a fifth of a panel off.
+pub(crate) const FLATNESS: u32 = 4;
 
 /// A coordinate direction.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -114,7 +116,11 @@ impl Axis {
 }
 
 impl Sense {
-    fn of(part: &Rational) -> Sense {
+    /// A leg sketched shorter than one in [`FLATNESS`] of the other says nothing: a rough sketch may have it wrong.
+    fn of(part: &Rational, other: &Rational) -> Sense {
+        if part.abs() * whole(FLATNESS) < other.abs() {
+            return Sense::Either;
+        }
         match part.cmp(&Rational::zero()) {
             Ordering::Less => Sense::Minus,
             Ordering::Equal => Sense::Either,
@@ -299,7 +305,7 @@ fn ties(axis: Axis, joints: &[JointId]) -> Vec<Condition> {
 fn pitch(truss: &Truss, ends: [JointId; 2], rise: &Rational, run: &Rational, half: &Rational) -> Condition {
     let (small, large, axis) = if rise <= run { (rise, run, Axis::Y) } else { (run, rise, Axis::X) };
     let sketch = &truss.joint(ends[1]).point() - &truss.joint(ends[0]).point();
-    let senses = [Sense::of(&sketch.x), Sense::of(&sketch.y)];
+    let senses = [Sense::of(&sketch.x, &sketch.y), Sense::of(&sketch.y, &sketch.x)];
     let range = from_zero(small, half).scaled(&large.recip());
     Condition::plain(Function::Slope { from: ends[0], to: ends[1], small: axis, senses }, range)
 }
@@ -313,22 +319,11 @@ fn angle(joints: [JointId; 3], degrees: &Rational, half: &Rational) -> Condition
     Condition { function, sure, possible: high.hull(&low) }
 }
 
-/// An enclosure of the squared cosine with the cosine's sign; exact where it is rational (multiples of 30° and 45°).
+/// An enclosure of the squared cosine with the cosine's sign; exact at multiples of 30° and 45°, where alone it is rational
+/// (Niven's theorem).
 pub(crate) fn signed_cosine(degrees: &Rational) -> Interval {
-    let square = match exact_spread(degrees) {
-        Some(spread) => Interval::exactly(Rational::one() - spread),
-        None => &Interval::exactly(Rational::one()) - &spread_of_degrees(degrees, ANGLE_BITS),
-    };
+    let square = &Interval::exactly(Rational::one()) - &spread_of_degrees(degrees, ANGLE_BITS);
     if *degrees > whole(90) { -&square } else { square }
-}
-
-/// The spread of an angle where it is rational: by Niven's theorem only at multiples of 30° and 45°.
-fn exact_spread(degrees: &Rational) -> Option<Rational> {
-    let quarter = |n: i64| Some(ratio(n, 4));
-    [(0, 0), (30, 1), (45, 2), (60, 3), (90, 4), (120, 3), (135, 2), (150, 1), (180, 0)]
-        .into_iter()
-        .find(|(angle, _)| *degrees == whole(*angle))
-        .and_then(|(_, n)| quarter(n))
 }
 
 fn relation(kind: &FigureKind, half: &Rational) -> Vec<Condition> {

@@ -10,14 +10,16 @@
 //! "Closes" rests on a layout that [`verify`] found to agree, "does not close" on a certificate checked exactly; floating
 //! point only guides. No clock, no randomness: work is bounded by counts in [`Effort`].
 
-mod degrees;
 mod exclusion;
+mod explain;
+mod freedom;
 mod implied;
 mod meaning;
 mod misfits;
 mod proposal;
 mod readings;
 mod search;
+mod settle;
 mod sides;
 mod slips;
 mod strings;
@@ -84,12 +86,14 @@ pub fn close_watched(
     effort: &Effort,
     watch: &mut dyn FnMut(Progress) -> bool,
 ) -> (CloseAnswer, Vec<Finding>) {
-    let _ = watch;
     if truss.figures.is_empty() {
         return (answer(CloseState::NoFigures, Proof::None, "no figures to ask about"), Vec::new());
     }
-    let (answer, mut findings) =
-        if truss.joints.iter().any(|joint| joint.loose) { loose_joints(truss, effort) } else { set_joints(truss) };
+    let (answer, mut findings) = if truss.joints.iter().any(|joint| joint.loose) {
+        settle::settle(truss, effort, watch)
+    } else {
+        set_joints(truss)
+    };
     findings.extend(strings::short_strings(truss));
     (answer, findings)
 }
@@ -114,7 +118,7 @@ fn set_joints(truss: &Truss) -> (CloseAnswer, Vec<Finding>) {
     let failing: Vec<FigureId> = doubtful.iter().copied().filter(certain).collect();
     let count = truss.figures.len();
     let mut found = if doubtful.is_empty() {
-        answer(CloseState::Closes, Proof::Layout, format!("{count} figures, every one checked"))
+        answer(CloseState::Closes, Proof::Layout, format!("{}, every one checked", settle::figures_counted(count)))
     } else if failing.is_empty() {
         answer(CloseState::NotSettled, Proof::Search, "an angle lies on the very border of its figure")
     } else {
@@ -124,44 +128,16 @@ fn set_joints(truss: &Truss) -> (CloseAnswer, Vec<Finding>) {
     found.readings = readings::readings(truss, &places);
     found.suspects = lone_suspect(truss, &doubtful, &places).into_iter().collect();
     found.layout = doubtful.is_empty().then(|| places.clone());
-    let told = failing.iter().filter(|id| !truss.figure(**id).kind.is_relation() || is_tie(truss, **id));
+    let told = failing.iter().filter(|id| told_here(truss, **id));
     let findings = told.map(|id| misfits::misfit(truss, *id, &places)).collect();
     (found, findings)
 }
 
-fn loose_joints(truss: &Truss, effort: &Effort) -> (CloseAnswer, Vec<Finding>) {
-    let problem = trial::Problem::new(truss, effort);
-    let start = problem.adjusted(&[]);
-    let trial = problem.trial(&[], &start);
-    let count = truss.figures.len();
-    let certificate = if trial.layout.is_none() { problem.exclusion(&[], trial.best.as_ref()) } else { None };
-    if let Some(certificate) = certificate {
-        let kind = match certificate {
-            exclusion::Certificate::Set(_) => "set",
-            exclusion::Certificate::Chain { .. } => "chain",
-            exclusion::Certificate::Polygon { .. } => "polygon",
-            exclusion::Certificate::Stress(_) => "stress",
-        };
-        let mut a = answer(CloseState::DoesNotClose, Proof::Exclusion, kind);
-        let blame = suspects::blame(&problem, &trial, &start, &mut |_| true);
-        a.suspects = blame.singles.iter().map(|x| x.suspect.clone()).collect();
-        return (a, Vec::new());
-    }
-    let mut found = match &trial.layout {
-        Some(_) => answer(CloseState::Closes, Proof::Layout, format!("{count} figures, every one checked")),
-        None => answer(CloseState::NotSettled, Proof::Search, format!("{:?}", trial.best.map(|b| b.overshoot))),
-    };
-    if let Some(layout) = &trial.layout {
-        found.readings = readings::readings(truss, layout);
-    }
-    found.layout = trial.layout;
-    (found, Vec::new())
-}
-
-/// Level and plumb are told here; the other relations are told by the question of true lines.
-fn is_tie(truss: &Truss, id: FigureId) -> bool {
+/// Square, in line, parallel and equal among set joints are told by the question of true lines.
+pub(crate) fn told_here(truss: &Truss, id: FigureId) -> bool {
     use crate::truss::FigureKind::{Level, Plumb};
-    matches!(truss.figure(id).kind, Level { .. } | Plumb { .. })
+    let kind = &truss.figure(id).kind;
+    !kind.is_relation() || matches!(kind, Level { .. } | Plumb { .. })
 }
 
 /// Among set joints a figure is a suspect only when it is the one that fails.

@@ -5,12 +5,11 @@
 //! no such triangle takes the line between its first two neighbours instead. A triangle sketched flatter than one in
 //! [`FLATNESS`] says nothing: a rough sketch may well have that wrong.
 
+use super::meaning::FLATNESS;
 use crate::exact::{Orientation, Rational, orientation, quadrance, whole};
 use crate::truss::{FigureKind, JointId, Truss};
 use std::collections::BTreeSet;
 
-/// A triangle whose height is less than its longest side over this says nothing about sides.
-const FLATNESS: u32 = 8;
 /// Joints with more neighbours than this are not searched for triangles; no drawing has them.
 const MOST_NEIGHBOURS: usize = 64;
 

@@ -209,14 +209,26 @@ impl Problem<'_> {
         })
     }
 
+    /// The sketch mirrored sideways, upside down and both, for figures that may close only there.
+    pub(crate) fn mirrored_sketches(&self) -> [Vec<[f64; 2]>; 3] {
+        let sketch = self.with_base(&[], |base| base.model.float_sketch(self.truss));
+        [[-1.0, 1.0], [1.0, -1.0], [-1.0, -1.0]].map(|[x, y]| sketch.iter().map(|p| [x * p[0], y * p[1]]).collect())
+    }
+
     /// The places of the best that floats found, by joint.
     pub(crate) fn places_of(&self, disregarded: &[FigureId], best: &Best) -> Vec<[f64; 2]> {
         self.with_base(disregarded, |base| base.network.places(&best.unknowns))
     }
 
-    /// A proof, accepted by the judge, that the figures without these cannot close.
-    pub(crate) fn exclusion(&self, disregarded: &[FigureId], best: Option<&Best>) -> Option<Certificate> {
+    /// A proof, accepted by the judge, that the figures without these cannot close; with the sketch's sides only when asked.
+    pub(crate) fn exclusion(
+        &self,
+        disregarded: &[FigureId],
+        best: Option<&Best>,
+        with_sides: bool,
+    ) -> Option<Certificate> {
         let case = self.case(disregarded);
+        let case = if with_sides { case } else { Case { sides: &[], ..case } };
         let simple = chains::simple(&case);
         simple.or_else(|| {
             let best = best?;

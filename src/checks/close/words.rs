@@ -2,7 +2,7 @@
 
 use super::meaning::signed_cosine;
 use crate::exact::{Rational, Surd, nearest_multiple, ratio, whole};
-use crate::measure::Unit;
+use crate::measure::{Sheet, Unit};
 use crate::truss::{Figure, FigureKind, Truss};
 use num_bigint::BigInt;
 use num_integer::Integer;
@@ -29,34 +29,15 @@ pub(crate) fn length(truss: &Truss, value: &Rational, step: &Rational) -> String
     exact_length(truss, &rounded)
 }
 
-/// The root of a quadrance, rounded to the step and printed.
-pub(crate) fn root(truss: &Truss, quadrance: &Rational, step: &Rational) -> String {
-    exact_length(truss, &rounded_root(quadrance, step))
-}
-
 /// The root of a quadrance to the nearest step; 0 for a negative one.
 pub(crate) fn rounded_root(quadrance: &Rational, step: &Rational) -> Rational {
     let rounded = Surd::of_quadrance(quadrance).and_then(|surd| surd.nearest(step));
     rounded.map_or_else(Rational::zero, |r| step * Rational::from_integer(r.steps))
 }
 
-/// A length printed without rounding.
+/// A length printed without rounding, as it can be typed.
 pub(crate) fn exact_length(truss: &Truss, value: &Rational) -> String {
-    if truss.unit.is_imperial() { feet_inches(&(value * truss.unit.in_units_of(Unit::In))) } else { plain(value) }
-}
-
-/// `40'-0"`, `-4 1/2"`, `5'-8 9/16"`.
-fn feet_inches(inches: &Rational) -> String {
-    let sign = if inches.is_negative() { "-" } else { "" };
-    let size = inches.abs();
-    let (feet, rest) = size.floor().to_integer().div_rem(&BigInt::from(12));
-    let fraction = size.fract();
-    let small = match (rest.is_zero() && !feet.is_zero(), fraction.is_zero()) {
-        (_, true) => format!("{rest}\""),
-        (false, false) if rest.is_zero() => format!("{fraction}\""),
-        _ => format!("{rest} {fraction}\""),
-    };
-    if feet.is_zero() { format!("{sign}{small}") } else { format!("{sign}{feet}'-{small}") }
+    Sheet::of(truss.unit, &truss.step.value).written(value).text
 }
 
 /// A plain number: a decimal where it ends within 12 places, else a fraction.

@@ -9,7 +9,7 @@ use super::boxes::{Frame, Way, condition_of};
 use super::forms::{Form, LegPart, forms, side_form};
 use super::span::Span;
 use super::{Bound, Branch, Certificate, Link, Part, Source, Stress};
-use crate::checks::close::meaning::{Axis, Condition, Function, leg};
+use crate::checks::close::meaning::{Axis, Condition, Function};
 use crate::checks::close::sides::Side;
 use crate::exact::{Interval, Rational, whole};
 use crate::truss::{FigureId, Truss};

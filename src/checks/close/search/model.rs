@@ -26,6 +26,8 @@ pub(crate) struct Pin {
     pub joint: JointId,
     /// A joint kept level (Y) or plumb (X) with it, when the part could turn.
     pub turn: Option<(JointId, Axis)>,
+    /// True when the joint is set, so that the part cannot slide.
+    pub is_set: bool,
 }
 
 /// The unknowns of a truss without some of its figures.
@@ -259,12 +261,12 @@ fn parts(truss: &Truss, kept: &dyn Fn(usize) -> bool) -> Vec<usize> {
     (0..truss.joints.len()).map(|joint| *first[ties.find(joint).0].get_or_insert(joint)).collect()
 }
 
-/// A pin for every part without a set joint.
+/// A pin for every part that is free to slide or to turn as a whole.
 fn pins(truss: &Truss, parts: &[usize], kept: &dyn Fn(usize) -> bool) -> Vec<Pin> {
     let count = truss.joints.len();
-    let (mut has_set, mut directed) = (vec![false; count], vec![false; count]);
-    for (joint, part) in parts.iter().enumerate() {
-        has_set[*part] |= !truss.joints[joint].loose;
+    let (mut set, mut directed) = (vec![Vec::new(); count], vec![false; count]);
+    for (joint, part) in parts.iter().enumerate().filter(|(joint, _)| !truss.joints[*joint].loose) {
+        set[*part].push(joint);
     }
     for (_, figure) in truss.figures.iter().enumerate().filter(|(index, _)| kept(*index)) {
         if gives_direction(&figure.kind)
@@ -273,12 +275,15 @@ fn pins(truss: &Truss, parts: &[usize], kept: &dyn Fn(usize) -> bool) -> Vec<Pin
             directed[parts[joint.index()]] = true;
         }
     }
-    let free = (0..count).filter(|&joint| parts[joint] == joint && !has_set[joint]);
-    free.map(|joint| {
-        let turn = if directed[joint] { None } else { levelled(truss, parts, joint) };
-        Pin { joint: JointId::new(joint), turn }
-    })
-    .collect()
+    // A part with one set joint cannot slide, but may still turn about it.
+    let free = (0..count).filter(|&joint| parts[joint] == joint && set[joint].len() < 2);
+    let pin = |part: usize| {
+        let joint = set[part].first().copied().unwrap_or(part);
+        let turn = if directed[part] { None } else { levelled(truss, parts, part, joint) };
+        let holds = set[part].is_empty() || turn.is_some();
+        holds.then_some(Pin { joint: JointId::new(joint), turn, is_set: !set[part].is_empty() })
+    };
+    free.filter_map(pin).collect()
 }
 
 /// True for figures that tell how the drawing is turned.
@@ -294,11 +299,11 @@ pub(crate) fn gives_direction(kind: &FigureKind) -> bool {
 }
 
 /// The joint of a part that is sketched most nearly level (or plumb) with its first and far from it.
-fn levelled(truss: &Truss, parts: &[usize], first: usize) -> Option<(JointId, Axis)> {
+fn levelled(truss: &Truss, parts: &[usize], part: usize, first: usize) -> Option<(JointId, Axis)> {
     let from = truss.joints[first].point();
     let four = crate::exact::whole(4);
     let mut best: Option<(Rational, JointId, Axis)> = None;
-    for joint in (0..parts.len()).filter(|&joint| parts[joint] == first && joint != first) {
+    for joint in (0..parts.len()).filter(|&joint| parts[joint] == part && joint != first) {
         let leg = &truss.joints[joint].point() - &from;
         for (axis, along, off) in [(Axis::Y, leg.x.abs(), leg.y.abs()), (Axis::X, leg.y.abs(), leg.x.abs())] {
             let worth = along - &four * off;
