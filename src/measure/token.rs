@@ -126,7 +126,8 @@ impl Scanner<'_> {
         if SUPERSCRIPTS.contains(&first) {
             return self.typeset_fraction();
         }
-        if first.is_alphabetic() {
+        // Two of the foot and inch marks count as letters.
+        if first.is_alphabetic() && !matches!(first, 'ʹ' | 'ʺ') {
             return self.word();
         }
         self.next += 1;
@@ -185,14 +186,20 @@ impl Scanner<'_> {
 
     fn word(&mut self) -> Result<Piece, ValueError> {
         let start = self.next;
-        let word = self.take_while(char::is_alphabetic);
+        let word = self.take_while(|c| c.is_alphabetic() && !matches!(c, 'ʹ' | 'ʺ'));
         let unit = match word.to_lowercase().as_str() {
             "mm" => Unit::Mm,
             "cm" => Unit::Cm,
             "m" => Unit::M,
             "in" | "inch" | "inches" => Unit::In,
             "ft" | "foot" | "feet" => Unit::Ft,
-            "x" => return Ok(Piece::Times),
+            // `2x4` is a section of timber, not eight.
+            "x" if start > 0 && is_blank(self.characters[start - 1]) && self.peek().is_some_and(is_blank) => {
+                return Ok(Piece::Times);
+            }
+            "x" => {
+                return Err(ValueError::new(start + 1, "to multiply, write * or put a blank on both sides of the x"));
+            }
             "deg" => return Ok(Piece::Degree),
             _ => return Err(unknown(start, &word)),
         };

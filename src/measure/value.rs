@@ -17,8 +17,15 @@
 //! - **blanks on both sides** subtract: `40' - 2"` is thirty-nine feet ten;
 //! - a blank on **one side only** is refused, since nobody can tell.
 //!
+//! Behind an inch mark there is nothing left to join, and a hyphen is a minus: `10'-4"-2"` is ten feet two.
+//!
 //! In the same way `4-5/16"` is four and five sixteenths inches, and `4 - 5/16"` is a difference. Without a mark `4-5/16`
 //! could be either, and is refused. The inch mark behind feet may be left out: `10'-4` is `10'-4"`.
+//!
+//! # What a slash means
+//!
+//! Two whole numbers around a slash without blanks are a fraction: `40' / 1/2` is eighty feet. Behind a slash without blanks
+//! they are not, and arithmetic goes from left to right: `40'/7/2` is half of a seventh.
 //!
 //! # Units
 //!
@@ -99,20 +106,34 @@ pub fn parse_degrees(text: &str) -> Result<Rational, ValueError> {
 ///
 /// As [`parse_length`], and when there are not two numbers.
 pub fn parse_pitch(text: &str) -> Result<(Written, Written), ValueError> {
-    let (rise, run, start) = split_pitch(text)?;
-    let rise = Written { value: parse_plain(rise)?, text: rise.to_owned() };
-    let value = parse_plain(run).map_err(|error| error.shifted(start))?;
-    Ok((rise, Written { value, text: run.to_owned() }))
+    let (rise, run) = split_pitch(text)?;
+    let side = |(start, side): (usize, &str)| {
+        let value = parse_plain(side).map_err(|error| error.shifted(start))?;
+        Ok(Written { value, text: side.to_owned() })
+    };
+    Ok((side(rise)?, side(run)?))
 }
 
-/// The two sides of a pitch, and how many characters stand before the second.
-fn split_pitch(text: &str) -> Result<(&str, &str, usize), ValueError> {
-    let characters_before = |bytes: usize| text.get(..bytes).map_or(0, |part| part.chars().count());
+/// A part of a text, and how many characters stand before it.
+type Side<'a> = (usize, &'a str);
+
+/// The two sides of a pitch.
+fn split_pitch(text: &str) -> Result<(Side<'_>, Side<'_>), ValueError> {
+    // What stands behind a side has this many bytes.
+    let side = |side: &'_ str, behind: usize| {
+        let before = text.get(..text.len() - behind - side.len()).unwrap_or_default();
+        before.chars().count()
+    };
     if let Some((rise, run)) = text.split_once(':') {
-        return Ok((rise, run, characters_before(rise.len() + 1)));
+        return Ok(((0, rise), (side(run, 0), run)));
     }
     if let Some((rise, run)) = text.split_once(" in ") {
-        return Ok((rise.trim(), run.trim(), characters_before(text.len() - run.trim_start().len())));
+        let (rise_start, run_start) = (rise.trim_start(), run.trim_start());
+        let behind_rise = text.len() - rise.len();
+        return Ok((
+            (side(rise_start, behind_rise), rise_start.trim_end()),
+            (side(run_start, 0), run_start.trim_end()),
+        ));
     }
     parse_plain(text)?;
     Err(ValueError::new(text.chars().count() + 1, "expected rise and run such as 6:12"))
@@ -200,11 +221,13 @@ struct Parser {
     next: usize,
     depth: usize,
     wanted: Wanted,
+    /// A slash without blanks was just read: what stands behind it is no fraction of whole numbers.
+    behind_slash: bool,
 }
 
 impl Parser {
     fn new(text: &str, wanted: Wanted) -> Result<Parser, ValueError> {
-        Ok(Parser { tokens: tokens(text)?, next: 0, depth: 0, wanted })
+        Ok(Parser { tokens: tokens(text)?, next: 0, depth: 0, wanted, behind_slash: false })
     }
 
     /// The token `ahead` of the next one; the end repeats for ever.
@@ -250,6 +273,7 @@ impl Parser {
                 Piece::Over => true,
                 _ => return Ok(total),
             };
+            self.behind_slash = divide && !self.look(0).gap && !self.look(1).gap;
             self.next += 1;
             let second = self.look(0).at;
             let next = self.signed()?;
@@ -290,6 +314,7 @@ impl Parser {
     }
 
     fn parenthesis(&mut self) -> Result<Quantity, ValueError> {
+        self.behind_slash = false;
         self.next += 1;
         let inner = self.sum()?;
         if *self.piece(0) != Piece::Close {
@@ -298,7 +323,16 @@ impl Parser {
         self.next += 1;
         match (self.piece(0), inner.kind) {
             (Piece::Unit(_), Kind::Length) => Err(self.expected("an operator or the end after a length")),
-            (&Piece::Unit(unit), _) => self.in_unit(inner.value, unit),
+            (Piece::Unit(_), Kind::Ratio { .. }) => {
+                Err(self.expected("an operator or the end after a ratio of lengths"))
+            }
+            (&Piece::Unit(unit), Kind::Bare) => {
+                let found = self.in_unit(inner.value, unit)?;
+                if unit == Unit::Ft && self.hyphen_joins_inches()? {
+                    return Err(self.unclear(0, "10'-4\"", "10' - 4\""));
+                }
+                Ok(found)
+            }
             _ => Ok(inner),
         }
     }
@@ -330,10 +364,13 @@ impl Parser {
         if self.starts_number(0) {
             return Ok(true);
         }
-        let joined =
-            *self.piece(0) == Piece::Minus && self.starts_number(1) && self.is_tight(0, "10'-4\"", "10' - 4\"")?;
+        let joined = self.hyphen_joins_inches()?;
         self.next += usize::from(joined);
         Ok(joined)
+    }
+
+    fn hyphen_joins_inches(&self) -> Result<bool, ValueError> {
+        Ok(*self.piece(0) == Piece::Minus && self.starts_number(1) && self.is_tight(0, "10'-4\"", "10' - 4\"")?)
     }
 
     fn inches(&mut self) -> Result<Rational, ValueError> {
@@ -344,6 +381,10 @@ impl Parser {
             Piece::Unit(_) => {
                 return Err(self.expected("inches after feet; to subtract, put a blank on both sides of the minus"));
             }
+            // The trade also writes 10'-4-5 for five sixteenths.
+            Piece::Minus if self.starts_number(1) && self.is_tight(0, "4 5/16", "4\" - 5/16\"")? => {
+                return Err(self.unclear(0, "4 5/16", "4\" - 5/16\""));
+            }
             _ => {}
         }
         Ok(inches.value * Unit::In.in_units_of(sheet))
@@ -351,7 +392,8 @@ impl Parser {
 
     /// A number, a fraction, or both. Behind feet a hyphen may join them in any case.
     fn mixed(&mut self, behind_feet: bool) -> Result<Mixed, ValueError> {
-        if let Some(value) = self.fraction(0)? {
+        let behind_slash = std::mem::take(&mut self.behind_slash);
+        if let Some(value) = self.fraction(0)?.filter(|_| !behind_slash || self.fraction_length(0) == 1) {
             return Ok(Mixed { value: self.skip_fraction(value), whole: false });
         }
         let Piece::Number { value, whole } = self.piece(0).clone() else {
