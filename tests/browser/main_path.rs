@@ -66,8 +66,8 @@ fn the_one_wrong_figure_is_found_and_its_value_taken() {
     page.wait_for_text(".evidence", "f34");
     page.wait_for_text(".evidence", "should read");
     page.wait_for_text(".evidence", "one foot");
-    page.wait_for_text("#board .struck", "8′-0 7/8″");
-    page.wait_for_text("#board .mend", "7′-0 7/8″");
+    assert_eq!(page.text("#board .struck"), "8′-0 7/8″");
+    assert_eq!(page.text("#board .mend"), "7′-0 7/8″");
     page.screenshot("suspect-wide-light", Window::WIDE, Scheme::Light);
     page.click(".evidence .mend .main");
     answered(&page);

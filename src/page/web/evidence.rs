@@ -49,7 +49,7 @@ fn suspect_item(view: &SuspectView, on: &Callback<PageEvent>) -> Html {
         <li class={if view.open { "finding open" } else { "finding" }} key={format!("s{index}")} {onmouseenter} {onmouseleave}>
             <button class="finding-head" aria-expanded={view.open.to_string()} onclick={act(PageEvent::SuspectChosen(index))}>
                 { sign(Sign::Fault) }
-                <span class="finding-text">{ format!("Figure {} may be wrong", view.mark) }</span>
+                <span class="finding-text">{ &view.words }</span>
                 <span class="finding-marks">{ &view.between }</span>
             </button>
             if view.open {

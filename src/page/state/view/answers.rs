@@ -1,8 +1,11 @@
 //! The five answers, always in sight.
 
-use crate::checks::{ClearState, CloseState, Level, Question, Report, StandsState, TrueState};
+use crate::checks::{
+    ClearState, CloseAnswer, CloseState, Level, Places, Question, Report, StandsAnswer, StandsState, TrueState,
+};
 use crate::measure::pretty;
 use crate::page::state::State;
+use crate::truss::Truss;
 
 /// How an answer or a finding is signed, beside its words.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -86,13 +89,30 @@ fn tile(state: &State, question: Question) -> AnswerTile {
             stale: false,
         },
         Some(checked) => {
-            let (answer, detail, sign) = words(&checked.report, question);
+            let (answer, detail, sign) = words(&checked.truss, &checked.report, question);
             AnswerTile { question, answer: pretty(&answer), detail: pretty(&detail), sign, chosen, stale }
         }
     }
 }
 
-fn words(report: &Report, question: Question) -> (String, String, Sign) {
+/// What stands under the answer to the first question: short, since its evidence is beside it.
+fn close_detail(truss: &Truss, close: &CloseAnswer) -> String {
+    match close.suspects.as_slice() {
+        [] => close.summary.clone(),
+        [only] => format!("proved; {} should read {}", truss.figure(only.figure).mark, only.implied),
+        several => format!("proved; {} suspects", several.len()),
+    }
+}
+
+fn stands_detail(truss: &Truss, stands: &StandsAnswer) -> String {
+    match (stands.state, stands.spare_members) {
+        (StandsState::Rigid, 0) => format!("{} members, none spare", truss.members.len()),
+        (StandsState::Rigid, spare) => format!("{} members, {spare} spare", truss.members.len()),
+        _ => stands.summary.clone(),
+    }
+}
+
+fn words(truss: &Truss, report: &Report, question: Question) -> (String, String, Sign) {
     let answers = &report.answers;
     let has = |level: Level| report.findings.iter().any(|f| f.rule.question() == question && f.level == level);
     let worst = |good: Sign| match () {
@@ -109,7 +129,7 @@ fn words(report: &Report, question: Question) -> (String, String, Sign) {
                 CloseState::TooFewFigures => ("Too few figures", worst(Sign::Caution)),
                 CloseState::NoFigures => ("No figures", worst(Sign::Note)),
             };
-            (answer.into(), answers.close.summary.clone(), sign)
+            (answer.into(), close_detail(truss, &answers.close), sign)
         }
         Question::True => {
             let (answer, sign) = match answers.lines.state {
@@ -134,8 +154,15 @@ fn words(report: &Report, question: Question) -> (String, String, Sign) {
                 StandsState::NoSupports => ("No supports", worst(Sign::Note)),
                 StandsState::NotSettled => ("Not settled", Sign::Caution),
             };
-            (answer.into(), answers.stands.summary.clone(), sign)
+            (answer.into(), stands_detail(truss, &answers.stands), sign)
         }
-        Question::Cut => (answers.cut.state.clone(), answers.cut.summary.clone(), worst(Sign::Note)),
+        Question::Cut => {
+            let summary = &answers.cut.summary;
+            let detail = summary
+                .split_once(" in all")
+                .map_or_else(|| summary.clone(), |(lengths, _)| format!("{lengths} in all"));
+            let sign = if report.places == Places::Sketch { Sign::Caution } else { worst(Sign::Note) };
+            (answers.cut.state.clone(), detail, sign)
+        }
     }
 }

@@ -3,7 +3,7 @@
 use super::dimensions::{draw_corners, draw_lengths, draw_strings};
 use super::labels::{Anchor, LabelView, Labels};
 use super::path::{PathText, PathView, tenths};
-use crate::checks::{Finding, Level};
+use crate::checks::{Finding, Level, Question, Rule};
 use crate::measure::pretty;
 use crate::page::state::camera::to_f64;
 use crate::page::state::{Camera, Pixel, Shown, State};
@@ -91,6 +91,8 @@ fn shown_findings(state: &State) -> Vec<&Finding> {
         None => findings
             .iter()
             .filter(|f| f.rule.question() == state.question && f.level != Level::Note)
+            // Where figures are under suspicion, they are what is shown.
+            .filter(|f| f.rule != Rule::Excluded || checked.report.answers.close.suspects.is_empty())
             .take(200)
             .collect(),
     }
@@ -197,8 +199,31 @@ fn draw_findings(board: &Board, paths: &mut Vec<Option<PathView>>) {
                 marks.cross(board.camera.pixel(point), 6.0);
             }
         }
+        if level == Level::Fault {
+            light_suspect(board, &mut lines, &mut marks);
+        }
         paths.push(lines.view(members));
         paths.push(marks.view(points));
+    }
+}
+
+/// Lights the suspect that is open, or the first: its joints, and its member where it has one.
+fn light_suspect(board: &Board, lines: &mut PathText, marks: &mut PathText) {
+    let state = board.state;
+    let Some(checked) = state.fresh().filter(|_| state.question == Question::Close && state.open_finding.is_none())
+    else {
+        return;
+    };
+    let suspects = &checked.report.answers.close.suspects;
+    let Some(suspect) = suspects.get(state.open_suspect.unwrap_or(0)) else { return };
+    let joints = board.truss.figure(suspect.figure).kind.joints();
+    for &joint in &joints {
+        marks.circle(board.pixel(joint), 7.5);
+    }
+    if let [from, to] = joints[..]
+        && board.truss.members.iter().any(|m| m.ends() == [from, to] || m.ends() == [to, from])
+    {
+        lines.line(board.pixel(from), board.pixel(to));
     }
 }
 
@@ -208,7 +233,16 @@ fn draw_joints(board: &Board, paths: &mut Vec<Option<PathView>>) {
     for (joint, &pixel) in board.truss.joints.iter().zip(&board.pixels) {
         if board.sees(pixel, pixel) {
             let path = if joint.loose { &mut loose } else { &mut set };
-            path.circle(pixel, if crowded { 2.0 } else { 3.6 });
+            path.circle(
+                pixel,
+                if crowded {
+                    2.0
+                } else if joint.loose {
+                    2.8
+                } else {
+                    3.8
+                },
+            );
         }
     }
     paths.push(set.view("joint"));
@@ -296,7 +330,7 @@ const MOST_MOVING: usize = 3000;
 const STROKE: f64 = 26.0;
 
 fn motion(board: &Board) -> Option<[String; 3]> {
-    let checked = board.state.fresh().filter(|_| board.state.question == crate::checks::Question::Stands)?;
+    let checked = board.state.fresh().filter(|_| board.state.question == Question::Stands)?;
     let motion = &checked.report.answers.stands.motion;
     if motion.is_empty() || board.truss.members.len() > MOST_MOVING {
         return None;

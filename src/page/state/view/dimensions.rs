@@ -113,6 +113,8 @@ fn place_value(board: &Board, labels: &mut Labels, id: FigureId, label: LabelVie
 
 /// Gives each span a row in which it stands on no other, shortest first; repeated panels are named on their overall.
 fn rows(mut spans: Vec<Span>) -> Vec<(usize, Span, String)> {
+    // A figure of nothing (a joint plumb over another) has no dimension line.
+    spans.retain(|span| span.hi - span.lo > 1.0);
     spans.truncate(MOST);
     spans.sort_by(|a, b| (a.hi - a.lo).total_cmp(&(b.hi - b.lo)));
     let mut taken: Vec<Vec<(f64, f64)>> = Vec::new();

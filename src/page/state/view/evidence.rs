@@ -36,6 +36,8 @@ pub struct SuspectView {
     pub index: usize,
     /// Its mark.
     pub mark: String,
+    /// What is said of it: that it is wrong when it alone can be, that it may be otherwise.
+    pub words: String,
     /// The figure, to point at.
     pub thing: Thing,
     /// Between which joints.
@@ -112,7 +114,11 @@ pub fn evidence_view(state: &State) -> Option<EvidenceView> {
         question,
         sentence: pretty(&sentence(checked, question)),
         numbers: numbers(checked, question).into_iter().map(|(name, value)| (name, pretty(&value))).collect(),
-        suspects: suspects.iter().enumerate().map(|(index, s)| suspect_view(state, truss, index, s)).collect(),
+        suspects: suspects
+            .iter()
+            .enumerate()
+            .map(|item| suspect_view(state, truss, item, suspects.len() == 1))
+            .collect(),
         findings: of_question().take(MOST).map(|(index, f)| finding_view(state, truss, index, f)).collect(),
         more: of_question().count().saturating_sub(MOST),
         has_layout: state.has_layout(),
@@ -121,7 +127,7 @@ pub fn evidence_view(state: &State) -> Option<EvidenceView> {
     })
 }
 
-fn suspect_view(state: &State, truss: &Truss, index: usize, suspect: &Suspect) -> SuspectView {
+fn suspect_view(state: &State, truss: &Truss, (index, suspect): (usize, &Suspect), is_only: bool) -> SuspectView {
     let figure = truss.figure(suspect.figure);
     let sheet = Sheet::of(truss.unit, &truss.step.value);
     let is_length = matches!(figure.kind.name(), "length" | "run" | "rise");
@@ -131,6 +137,7 @@ fn suspect_view(state: &State, truss: &Truss, index: usize, suspect: &Suspect) -
     SuspectView {
         index,
         mark: figure.mark.clone(),
+        words: format!("Figure {} {}", figure.mark, if is_only { "cannot be right" } else { "may be wrong" }),
         thing: Thing::Figure(suspect.figure),
         between: marks(truss, &figure.kind.joints()),
         printed: pretty(&figure.kind.value_text().unwrap_or_else(|| figure.kind.name().into())),
@@ -149,7 +156,7 @@ fn finding_view(state: &State, truss: &Truss, index: usize, finding: &Finding) -
         index,
         sign: Sign::of_level(finding.level),
         rule: finding.rule.name(),
-        text: pretty(&finding.text),
+        text: pretty(&as_sentence(truss, &finding.text)),
         marks: finding_marks(truss, finding),
         thing: first_thing(finding),
         open,
@@ -159,6 +166,19 @@ fn finding_view(state: &State, truss: &Truss, index: usize, finding: &Finding) -
             .as_ref()
             .filter(|_| open)
             .map(|mend| MendView { text: pretty(&mend.text), can: mend.edit.is_some() && state.fresh().is_some() }),
+    }
+}
+
+/// A text that begins a line: with a capital, unless it begins with a mark of the drawing.
+fn as_sentence(truss: &Truss, text: &str) -> String {
+    let first = text.split([' ', ',', ':']).next().unwrap_or_default();
+    let is_mark = truss.figures.iter().any(|f| f.mark == first) || truss.joint_marked(first).is_some();
+    let mut rest = text.chars();
+    match rest.next() {
+        Some(letter) if letter.is_ascii_lowercase() && !is_mark => {
+            format!("{}{}", letter.to_ascii_uppercase(), rest.as_str())
+        }
+        _ => text.to_string(),
     }
 }
 
@@ -253,6 +273,8 @@ fn numbers(checked: &Checked, question: Question) -> Vec<(String, String)> {
             row("unknowns", answers.stands.unknowns.to_string()),
             row("spare", answers.stands.spare_members.to_string()),
         ],
-        Question::Cut => vec![row("pieces", truss.members.len().to_string())],
+        Question::Cut => {
+            vec![row("pieces", truss.members.len().to_string()), row("lengths", answers.cut.summary.clone())]
+        }
     }
 }
