@@ -27,8 +27,12 @@ pub fn fingerprint(truss: &Truss) -> String {
     content.text("figures");
     for figure in &truss.figures {
         content.text(&figure.mark).text(figure.kind.name());
-        figure.kind.joints().iter().for_each(|id| drop(content.number(id.0)));
-        figure_values(&figure.kind).into_iter().for_each(|value| drop(content.value(value)));
+        for id in figure.kind.joints() {
+            content.number(id.0);
+        }
+        for value in figure_values(&figure.kind) {
+            content.value(value);
+        }
         content.text(&figure.step.as_ref().map(|step| step.value.to_string()).unwrap_or_default());
     }
     content.0.finalize().iter().take(8).map(|byte| format!("{byte:02x}")).collect()

@@ -255,6 +255,16 @@ impl State {
         layout.filter(|points| points.len() == self.truss.joints.len()).unwrap_or_else(|| self.truss.points())
     }
 
+    /// True when the board shows the layout without this suspect: asked for, or because it is the only one.
+    pub fn shows_without(&self, suspect: usize) -> bool {
+        let is_only = |checked: &Rc<Checked>| {
+            let close = &checked.report.answers.close;
+            close.layout.is_none() && close.suspects.len() == 1
+        };
+        self.shown == Shown::Without(suspect)
+            || (self.shown == Shown::Layout && suspect == 0 && self.fresh().is_some_and(is_only))
+    }
+
     /// True when the layout differs from the sketch, so that there is something to switch between.
     pub fn has_layout(&self) -> bool {
         self.fresh().is_some_and(|checked| checked.report.places == Places::Layout)

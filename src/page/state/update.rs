@@ -52,8 +52,7 @@ fn apply(state: &mut State, event: Event, effects: &mut Vec<Effect>) {
         Event::MendTaken(index) => take_mend(state, index, effects),
         Event::ImpliedTaken(index) => take_implied(state, index, effects),
         Event::WithoutShown(index) => {
-            let asked = Shown::Without(index);
-            state.shown = if state.shown == asked { Shown::Sketch } else { asked };
+            state.shown = if state.shows_without(index) { Shown::Sketch } else { Shown::Without(index) };
         }
         Event::ShownToggled => toggle_shown(state),
         Event::PointedAt(thing) => state.pointed = thing,

@@ -146,7 +146,7 @@ fn suspect_view(state: &State, truss: &Truss, (index, suspect): (usize, &Suspect
         slip: suspect.slip.map(|slip| slip.name().to_string()).unwrap_or_default(),
         open: state.open_suspect == Some(index)
             || (index == 0 && state.open_suspect.is_none() && state.open_finding.is_none()),
-        shown: state.shown == Shown::Without(index),
+        shown: state.shows_without(index),
     }
 }
 
