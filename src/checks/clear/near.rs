@@ -18,7 +18,7 @@ const EXACT: usize = 64;
 /// Joints nearer than the near distance to a member or a joint, but not on it.
 pub(crate) fn nearly_meeting(frame: &Frame, boxes: &Boxes) -> Vec<Finding> {
     let mut tally = Tally::new(Rule::NearlyMeeting, Level::Caution, frame.limits);
-    let mut left = PAIRS_EACH * (frame.joint_count() + frame.ends.len());
+    let mut left = PAIRS_EACH * (frame.joint_count() + frame.ends.len()).max(1);
     near_joints(frame, &mut tally, &mut left);
     near_members(frame, boxes, &mut tally, &mut left);
     if left == 0 {

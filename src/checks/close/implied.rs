@@ -150,7 +150,7 @@ fn reading(problem: &Problem, id: FigureId, range: &Interval, step: &Rational) -
 
 /// How much speaks for a reading among `count` that would do.
 fn weighed(problem: &Problem, id: FigureId, value: Rational, count: i64) -> ReadingFound {
-    let slip = explained(problem, id, &value);
+    let slip = explained(problem.truss, id, &value);
     let chance = (count.max(1) as f64).ln();
     let by_slip = slip.map_or(0.0, |slip| (slips::weight(slip) - chance).max(0.1));
     let like = (1.0 + alike(problem.truss, id, &value) as f64).ln();
@@ -172,8 +172,7 @@ fn alike(truss: &Truss, id: FigureId, value: &Rational) -> usize {
 }
 
 /// The slip that explains the printed value if the right one is `right`.
-fn explained(problem: &Problem, id: FigureId, right: &Rational) -> Option<Slip> {
-    let truss = problem.truss;
+pub(super) fn explained(truss: &Truss, id: FigureId, right: &Rational) -> Option<Slip> {
     let figure = truss.figure(id);
     let printed = printed(figure)?;
     let is_length = matches!(figure.kind, FigureKind::Length { .. } | FigureKind::Run { .. } | FigureKind::Rise { .. });

@@ -30,7 +30,7 @@ mod words;
 
 use super::{CloseAnswer, CloseState, Finding, Proof, Suspect};
 use crate::exact::{Interval, Point};
-use crate::truss::{FigureId, Truss};
+use crate::truss::{Edit, FigureId, FigureValue, Truss};
 
 /// How much work may be spent; counts, so that the answer is the same on every machine.
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -145,6 +145,10 @@ fn lone_suspect(truss: &Truss, failing: &[FigureId], places: &[Point]) -> Option
     let [id] = failing else { return None };
     let condition = meaning::conditions(truss, truss.figure(*id)).into_iter().find(|c| !c.holds(places))?;
     let implied_range: Interval = readings::enclosed_value(&condition, places)?;
-    let implied = misfits::implied(truss, *id, places)?.text;
-    Some(Suspect { figure: *id, implied, implied_range, slip: None, layout: places.to_vec() })
+    let proposal = misfits::implied(truss, *id, places)?;
+    let slip = match &proposal.edit {
+        Edit::FigureReads(_, FigureValue::One(right)) => implied::explained(truss, *id, &right.value),
+        _ => None,
+    };
+    Some(Suspect { figure: *id, implied: proposal.text, implied_range, slip, layout: places.to_vec() })
 }
