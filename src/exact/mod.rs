@@ -12,6 +12,7 @@ mod interval;
 mod lattice;
 mod laws;
 pub mod modular;
+pub mod order;
 mod point;
 mod predicates;
 mod rational;

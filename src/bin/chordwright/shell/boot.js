@@ -8,10 +8,10 @@
   const text = (id) => document.getElementById(id).textContent;
   let workerAddress;
 
-  const unpack = () => {
+  const program = () => {
     const packed = document.getElementById("wasm");
     const bytes = Uint8Array.from(atob(packed.textContent.trim()), (letter) => letter.charCodeAt(0));
-    return inflate(bytes, Number(packed.dataset.size));
+    return unpack(bytes, Number(packed.dataset.size));
   };
 
   const provideWorkers = (module) => {
@@ -24,7 +24,7 @@
   };
 
   const start = async () => {
-    const module = await WebAssembly.compile(unpack());
+    const module = await WebAssembly.compile(program());
     provideWorkers(module);
     await wasm_bindgen({ module_or_path: module });
   };

@@ -18,14 +18,15 @@ use sha2::{Digest as _, Sha256};
 use wasm_bindgen_cli_support::Bindgen;
 
 use super::machine::{self, During, Failure, Outcome};
+use super::pack::pack;
 use super::wasm::{self, Compiler};
 
-const INFLATE: &str = include_str!("../shell/inflate.js");
+const UNPACK: &str = include_str!("../shell/unpack.js");
 const BOOT: &str = include_str!("../shell/boot.js");
 const WORKER: &str = include_str!("../shell/worker.js");
 
-/// The strongest compression there is; the page is built once and opened often.
-const COMPRESSION: u8 = 10;
+/// How hard the page is compressed where a server would do it, to say how much that is: as hard as it goes.
+const GZIP_LEVEL: u8 = 10;
 
 /// What a gzip file has beside its compressed data.
 const GZIP_FRAME: usize = 18;
@@ -61,7 +62,7 @@ pub(crate) fn build() -> Outcome<Built> {
     write_module(&program, &dist.join("module"))?;
     let page = Page::of(&project, &program)?.text()?;
     machine::write(&file, &page)?;
-    let gzip_bytes = miniz_oxide::deflate::compress_to_vec(page.as_bytes(), COMPRESSION).len() + GZIP_FRAME;
+    let gzip_bytes = miniz_oxide::deflate::compress_to_vec(page.as_bytes(), GZIP_LEVEL).len() + GZIP_FRAME;
     Ok(Built { dist, file, bytes: page.len(), gzip_bytes })
 }
 
@@ -97,7 +98,7 @@ impl Page {
             shell: machine::read(&project.join("index.html"))?,
             style: styles(&project.join("styles"))?,
             glue: output.js().to_owned(),
-            boot: format!("{INFLATE}{BOOT}"),
+            boot: format!("{UNPACK}{BOOT}"),
             program: output.wasm_mut().emit_wasm(),
         })
     }
@@ -111,7 +112,7 @@ impl Page {
         let style = format!("<style>{}</style>", self.style);
         let page = put(&self.shell, "<!-- policy -->", &self.policy())?;
         let page = put(&page, "<!-- styles -->", &style)?;
-        put(&page, "<!-- program -->", &self.program_block())
+        put(&page, "<!-- program -->", &self.program_block()?)
     }
 
     /// Lets the scripts and the style of this file run, lets the worker be made of them, and shuts out everything else.
@@ -124,16 +125,16 @@ impl Page {
         )
     }
 
-    fn program_block(&self) -> String {
+    fn program_block(&self) -> Outcome<String> {
         let size = self.program.len();
-        let packed = BASE64.encode(miniz_oxide::deflate::compress_to_vec(&self.program, COMPRESSION));
+        let packed = BASE64.encode(pack(&self.program).during("the page's program could not be packed")?);
         let (glue, boot) = (&self.glue, &self.boot);
-        format!(
+        Ok(format!(
             "<script type=\"text/plain\" id=\"wasm\" data-size=\"{size}\">{packed}</script>\n\
              <script type=\"text/plain\" id=\"worker\">{WORKER}</script>\n\
              <script id=\"glue\">{glue}</script>\n\
              <script>{boot}</script>"
-        )
+        ))
     }
 }
 

@@ -4,6 +4,7 @@ use std::process::ExitCode;
 
 mod bundle;
 mod machine;
+mod pack;
 mod picture;
 mod serve;
 mod verify;

@@ -4,6 +4,7 @@ use super::dimensions::{draw_corners, draw_lengths, draw_strings};
 use super::labels::{Anchor, LabelView, Labels};
 use super::path::{PathText, PathView, tenths};
 use crate::checks::{Finding, Level, Question, Rule};
+use crate::exact::order;
 use crate::measure::pretty;
 use crate::page::state::camera::to_f64;
 use crate::page::state::{Camera, Pixel, Shown, State};
@@ -316,11 +317,11 @@ fn draw_marks(board: &Board, labels: &mut Labels) {
 /// The middles of the gaps between the directions, widest first.
 fn free_directions(directions: &mut [f64]) -> Vec<f64> {
     use std::f64::consts::{FRAC_PI_2, TAU};
-    directions.sort_by(f64::total_cmp);
+    order::sort_by(directions, f64::total_cmp);
     let Some((&first, _)) = directions.split_first() else { return vec![-FRAC_PI_2] };
     let next = directions.iter().skip(1).copied().chain([first + TAU]);
     let mut gaps: Vec<(f64, f64)> = directions.iter().zip(next).map(|(&a, b)| (b - a, (a + b) / 2.0)).collect();
-    gaps.sort_by(|a, b| b.0.total_cmp(&a.0));
+    order::sort_by(&mut gaps, |a, b| b.0.total_cmp(&a.0));
     gaps.into_iter().map(|(_, middle)| middle).collect()
 }
 

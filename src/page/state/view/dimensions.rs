@@ -3,6 +3,7 @@
 use super::board::{Board, figure_text};
 use super::labels::{Anchor, CHARACTER, LabelView, Labels, reading_turn};
 use super::path::{PathText, PathView};
+use crate::exact::order;
 use crate::measure::pretty;
 use crate::page::state::{Pixel, Shown};
 use crate::truss::{FigureId, FigureKind, JointId};
@@ -116,7 +117,7 @@ fn rows(mut spans: Vec<Span>) -> Vec<(usize, Span, String)> {
     // A figure of nothing (a joint plumb over another) has no dimension line.
     spans.retain(|span| span.hi - span.lo > 1.0);
     spans.truncate(MOST);
-    spans.sort_by(|a, b| (a.hi - a.lo).total_cmp(&(b.hi - b.lo)));
+    order::sort_by(&mut spans, |a, b| (a.hi - a.lo).total_cmp(&(b.hi - b.lo)));
     let mut taken: Vec<Vec<(f64, f64)>> = Vec::new();
     let mut placed: Vec<(usize, Span, String)> = Vec::new();
     for span in spans {
@@ -139,7 +140,7 @@ fn rows(mut spans: Vec<Span>) -> Vec<(usize, Span, String)> {
 fn with_panels(placed: &[(usize, Span, String)], whole: &Span) -> String {
     let inside = |span: &&Span| span.lo >= whole.lo - 0.5 && span.hi <= whole.hi + 0.5;
     let mut panels: Vec<&Span> = placed.iter().map(|(_, span, _)| span).filter(inside).collect();
-    panels.sort_by(|a, b| a.lo.total_cmp(&b.lo));
+    order::sort_by(&mut panels, |a, b| a.lo.total_cmp(&b.lo));
     let mut reach = whole.lo;
     for panel in &panels {
         if (panel.lo - reach).abs() > 0.5 || panel.text != panels[0].text {
@@ -159,7 +160,7 @@ pub(super) fn draw_lengths(board: &Board, labels: &mut Labels, paths: &mut Vec<O
     let mut lines = PathText::default();
     let mut ordered: Vec<(usize, &crate::truss::Figure)> =
         board.truss.figures.iter().enumerate().take(4 * MOST).collect();
-    ordered.sort_by_key(|(index, _)| !board.doubtful.contains(&FigureId::new(*index)));
+    order::sort_by_key(&mut ordered, |(index, _)| !board.doubtful.contains(&FigureId::new(*index)));
     for (index, figure) in ordered {
         let (from, to, side) = match figure.kind {
             FigureKind::Length { from, to, .. } => (from, to, 1.0),
