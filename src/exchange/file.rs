@@ -5,7 +5,7 @@ use crate::measure::{Unit, ValueError, Written, parse_degrees, parse_length, par
 use crate::truss::{
     Figure, FigureKind, Joint, JointId, Limit, Member, Role, Support, SupportKind, Truss, mark_problem,
 };
-use std::collections::HashMap;
+use std::collections::{HashMap, HashSet};
 use std::fmt;
 
 /// The most problems that are told of one file.
@@ -36,8 +36,8 @@ impl ReadError {
         ReadError { problems: vec![problem.into()], more: 0 }
     }
 
-    fn of(problems: Vec<String>) -> ReadError {
-        let more = problems.len().saturating_sub(MOST_TOLD);
+    fn of(problems: Vec<String>, more: usize) -> ReadError {
+        let more = more + problems.len().saturating_sub(MOST_TOLD);
         ReadError { problems: problems.into_iter().take(MOST_TOLD).collect(), more }
     }
 }
@@ -62,9 +62,9 @@ pub fn read_truss(bytes: &[u8]) -> Result<Truss, ReadError> {
     match truss.filter(|_| reader.problems.is_empty()) {
         Some(truss) => match truss.problems() {
             problems if problems.is_empty() => Ok(truss),
-            problems => Err(ReadError::of(problems.into_iter().map(|problem| problem.text).collect())),
+            problems => Err(ReadError::of(problems.into_iter().map(|problem| problem.text).collect(), 0)),
         },
-        None => Err(ReadError::of(reader.problems)),
+        None => Err(ReadError::of(reader.problems, reader.more)),
     }
 }
 
@@ -84,8 +84,13 @@ fn json_words(error: &serde_json::Error) -> String {
 #[derive(Default)]
 struct Reader {
     problems: Vec<String>,
+    /// How many more problems there are than are kept.
+    more: usize,
     unit: Unit,
     marks: HashMap<String, JointId>,
+    /// Marks of joints that could not be read, and whether there are joints of which not even the mark could.
+    lost: HashSet<String>,
+    nameless: bool,
 }
 
 /// The keys of an object, each to be taken once.
@@ -105,15 +110,21 @@ impl<'a> Keys<'a> {
     }
 }
 
+/// A text as it stands in the file, shortened; what cannot be seen is escaped, foot and inch marks are not.
 fn quoted(text: &str) -> String {
     let short: String = text.chars().take(60).collect();
     let dots = if short.len() < text.len() { "…" } else { "" };
-    format!("`{}{dots}`", short.escape_debug())
+    let shown = |c: char| if matches!(c, '\'' | '"' | '\\') { c.to_string() } else { c.escape_debug().to_string() };
+    format!("`{}{dots}`", short.chars().map(shown).collect::<String>())
 }
 
 impl Reader {
     fn wrong<T>(&mut self, place: &str, what: impl fmt::Display) -> Option<T> {
-        self.problems.push(if place.is_empty() { what.to_string() } else { format!("{place}: {what}") });
+        if self.problems.len() < MOST_TOLD {
+            self.problems.push(if place.is_empty() { what.to_string() } else { format!("{place}: {what}") });
+        } else {
+            self.more += 1;
+        }
         None
     }
 
@@ -122,8 +133,9 @@ impl Reader {
             return self.wrong(path, format!("expected an object, found {}", node.words()));
         };
         let mut keys: Keys<'a> = Keys { path: path.to_string(), entries: Vec::with_capacity(entries.len()) };
+        let mut seen = HashSet::with_capacity(entries.len());
         for (key, value) in entries {
-            if keys.entries.iter().any(|(name, _)| name == key) {
+            if !seen.insert(key.as_str()) {
                 self.wrong::<()>(path, format!("the key {} stands twice", quoted(key)));
             } else {
                 keys.entries.push((key, value));
@@ -220,9 +232,6 @@ impl Reader {
     fn each<T>(&mut self, items: &[Node], name: &str, read: fn(&mut Reader, &Node, &str) -> Option<T>) -> Vec<T> {
         let mut list = Vec::with_capacity(items.len());
         for (index, node) in items.iter().enumerate() {
-            if self.problems.len() > 10 * MOST_TOLD {
-                break;
-            }
             list.extend(read(self, node, &format!("{name}[{index}]")));
         }
         list
@@ -282,8 +291,17 @@ impl Reader {
     }
 
     fn joint(&mut self, node: &Node, path: &str) -> Option<Joint> {
-        let mut keys = self.keys(node, path)?;
-        let mark = self.mark(&mut keys, "mark");
+        let mut keys = self.keys(node, path);
+        let mark = keys.as_mut().and_then(|keys| self.mark(keys, "mark"));
+        let joint = keys.and_then(|keys| self.joint_marked(mark.clone(), keys, path));
+        if joint.is_none() {
+            self.nameless |= mark.is_none();
+            self.lost.extend(mark);
+        }
+        joint
+    }
+
+    fn joint_marked(&mut self, mark: Option<String>, mut keys: Keys, path: &str) -> Option<Joint> {
         let (x, y) = (self.needed_length(&mut keys, "x"), self.needed_length(&mut keys, "y"));
         let loose = match keys.take("loose") {
             None => Some(false),
@@ -301,7 +319,7 @@ impl Reader {
         match self.marks.get(mark) {
             Some(id) => Some(*id),
             // A joint that could not be read has been told already; naming it is no second problem.
-            None if !self.problems.is_empty() && self.problems[0].starts_with("joints") => None,
+            None if self.nameless || self.lost.contains(mark) => None,
             None => self.wrong(place, format!("there is no joint {}", quoted(mark))),
         }
     }
