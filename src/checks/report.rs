@@ -8,6 +8,7 @@ use super::frame::Frame;
 use super::limits::Limits;
 use super::placed::{Placed, Places};
 use super::{clear, cut, lines, stands};
+use crate::exact::order;
 use crate::truss::{JointId, Truss};
 
 /// Asks the five questions of a truss.
@@ -72,5 +73,5 @@ fn caution(truss: &Truss, close: &CloseAnswer, places: Places) -> Option<String>
 
 /// By question, worst first, then by rule; within a rule as they were found, which is the order of the lists.
 fn sort(found: &mut [Finding]) {
-    found.sort_by_key(|finding| (finding.rule.question(), finding.level, finding.rule));
+    order::sort_by_key(found, |finding| (finding.rule.question(), finding.level, finding.rule));
 }

@@ -4,6 +4,7 @@ use super::super::findings::{Finding, Law, Level, Rule};
 use super::super::frame::{Frame, Tally, joint_ids, member_ids, next_mark};
 use super::boxes::{Box4, Boxes};
 use super::sweep::{properly_cross, sweep};
+use crate::exact::order;
 use crate::exact::{Orientation, Point, is_between};
 use crate::truss::{Edit, Joint, JointId, Member, MemberId};
 
@@ -39,7 +40,7 @@ pub(crate) fn meetings(frame: &Frame, members: &[u32], boxes: &Boxes, most: usiz
         }
         compare_with_all(frame, member, boxes, most, &mut found);
     }
-    found.pairs.sort_unstable();
+    order::sort(&mut found.pairs);
     found.pairs.dedup();
     found.on_member = every_joint_there(frame, &found.on_member);
     found
@@ -98,7 +99,7 @@ fn every_joint_there(frame: &Frame, places: &[(u32, u32)]) -> Vec<(u32, u32)> {
         let there = frame.by_rank[first..].iter().take_while(|&&j| frame.rank[j as usize] == rank);
         all.extend(there.take(2).map(|&j| (j, member)));
     }
-    all.sort_unstable();
+    order::sort(&mut all);
     all.dedup();
     all
 }

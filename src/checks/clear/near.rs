@@ -4,6 +4,7 @@ use super::super::findings::{Finding, Law, Level, Rule};
 use super::super::frame::{Frame, Tally, joint_ids, member_ids};
 use super::boxes::Boxes;
 use crate::exact::Rational;
+use crate::exact::order;
 use crate::truss::{Edit, JointId};
 use num_traits::Signed;
 use std::cmp::Ordering;
@@ -79,7 +80,7 @@ fn near_members(frame: &Frame, boxes: &Boxes, tally: &mut Tally, left: &mut usiz
             }
             *left > 0
         });
-        near.sort_unstable();
+        order::sort(&mut near);
         for member in near {
             if let Some(square) = offset_inside(frame, joint, member as usize)
                 && frame.is_near(&square, &with_ends(frame, joint, member as usize))

@@ -2,6 +2,7 @@
 
 use super::super::findings::{Finding, Law, Level, Rule};
 use super::super::frame::{Frame, Tally, joint_ids, member_ids};
+use crate::exact::order;
 use crate::truss::{Edit, MemberId, Selection};
 
 /// Joints that stand in one place: one finding for each such place.
@@ -50,9 +51,9 @@ pub(crate) fn doubled(frame: &Frame) -> (Vec<u32>, Vec<Finding>) {
         [a.min(b), a.max(b)]
     };
     let mut members: Vec<u32> = (0..frame.ends.len() as u32).filter(|&m| !frame.has_no_length(m as usize)).collect();
-    members.sort_by_key(|&member| (key(member), member));
+    order::sort_by_key(&mut members, |&member| (key(member), member));
     let mut groups: Vec<&[u32]> = members.chunk_by(|&a, &b| key(a) == key(b)).collect();
-    groups.sort_by_key(|group| group[0]);
+    order::sort_by_key(&mut groups, |group| group[0]);
     for group in groups.iter().filter(|group| group.len() > 1) {
         tally.add(|rule, level| doubled_finding(frame, group, rule, level));
     }

@@ -10,6 +10,7 @@
 
 use super::super::frame::Frame;
 use crate::exact::Orientation;
+use crate::exact::order;
 use std::cmp::Ordering;
 
 /// What the sweep found.
@@ -61,7 +62,7 @@ impl Sweep<'_, '_> {
     /// The members in the order in which they enter: by the place of their left end, then upwards by slope.
     fn starting(&self, members: &[u32]) -> Vec<u32> {
         let mut starting = members.to_vec();
-        starting.sort_by(|&s, &t| {
+        order::sort_by(&mut starting, |&s, &t| {
             let by_place = self.rank(s, 0).cmp(&self.rank(t, 0));
             by_place.then_with(|| self.turn(t, s)).then(s.cmp(&t))
         });

@@ -9,6 +9,7 @@ use super::suspects::Blame;
 use super::words;
 use crate::checks::{Finding, Law, Level, Rule, Slip};
 use crate::exact::Rational;
+use crate::exact::order;
 use crate::truss::{Edit, FigureId, JointId, Truss};
 use num_traits::{Signed, Zero};
 
@@ -27,7 +28,7 @@ pub(crate) fn excluded(case: &Case, certificate: &Certificate, blame: &Blame) ->
     };
     let mut finding = Finding::new(Rule::Excluded, Level::Fault, text).figures(figures(certificate));
     let mut joints: Vec<JointId> = finding.figures.iter().flat_map(|id| case.truss.figure(*id).kind.joints()).collect();
-    joints.sort_unstable();
+    order::sort(&mut joints);
     joints.dedup();
     finding = finding.joints(joints);
     finding = evidence(finding, case, certificate);
@@ -86,7 +87,7 @@ fn weights(branch: &Branch) -> Vec<(FigureId, i128)> {
             }
         }
     }
-    found.sort_by_key(|(figure, weight)| (-weight.abs(), *figure));
+    order::sort_by_key(&mut found, |(figure, weight)| (-weight.abs(), *figure));
     found
 }
 

@@ -7,6 +7,7 @@ use super::meaning::Axis;
 use super::proposal::proposal;
 use super::words;
 use crate::checks::{Finding, Law, Level, Rule};
+use crate::exact::order;
 use crate::exact::{Rational, whole};
 use crate::truss::{Edit, FigureId, FigureKind, JointId, Truss};
 use num_traits::{Signed, ToPrimitive, Zero};
@@ -175,7 +176,9 @@ fn spread_evenly(chain: &[&Link], count: usize) -> Vec<bool> {
     let from_centre = |i: usize| (2 * i + 1).abs_diff(n);
     // The fair share of a link grows with its size, so the largest links have the largest remainders.
     let mut order: Vec<usize> = (0..n).collect();
-    order.sort_by(|&i, &k| chain[k].size.cmp(&chain[i].size).then(from_centre(i).cmp(&from_centre(k))).then(i.cmp(&k)));
+    order::sort_by(&mut order, |&i, &k| {
+        chain[k].size.cmp(&chain[i].size).then(from_centre(i).cmp(&from_centre(k))).then(i.cmp(&k))
+    });
     if n % 2 == 1 && count % 2 == 0 && chain.iter().all(|link| link.size == chain[0].size) {
         order.retain(|&i| i != n / 2);
         order.push(n / 2);

@@ -3,6 +3,7 @@
 use super::super::findings::{Finding, Level, Rule};
 use super::super::frame::{Frame, joint_ids};
 use super::{Doubts, deviation};
+use crate::exact::order;
 use crate::exact::{Rational, Tier, quadrance, whole};
 use num_bigint::BigInt;
 use std::collections::{BTreeMap, HashMap};
@@ -108,7 +109,7 @@ impl Mirror {
                 return Alike::No;
             }
         }
-        pairs.sort_unstable();
+        order::sort(&mut pairs);
         pairs.dedup();
         Alike::Nearly(Broken { pairs, twice: self.twice, places: self.places.len() })
     }

@@ -5,6 +5,7 @@ use super::super::findings::{Finding, Law, Level, Rule};
 use super::super::frame::{Frame, Tally, joint_ids, member_ids};
 use super::declared::{best_line, off_line, offset, spread_of, triple_quad, with_move_onto};
 use super::{Doubts, deviation, is_long};
+use crate::exact::order;
 use crate::exact::{Point, Rational};
 use crate::truss::{Edit, JointId, Role};
 use num_traits::{Signed, Zero};
@@ -145,7 +146,7 @@ pub(crate) fn nearly_parallel(frame: &Frame, chains: &[Chain], doubts: &mut Doub
         };
         let mut lines: Vec<(&Chain, [usize; 2])> =
             chains.iter().filter(of_kind).map(|chain| (chain, rightwards(frame, chain.ends()))).collect();
-        lines.sort_by(|s, t| frame.lattice.turn(t.1, s.1));
+        order::sort_by(&mut lines, |s, t| frame.lattice.turn(t.1, s.1));
         let families: Vec<&[(&Chain, [usize; 2])]> =
             lines.chunk_by(|s, t| frame.lattice.turn(s.1, t.1) == Ordering::Equal).collect();
         for i in 0..families.len() {

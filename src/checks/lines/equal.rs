@@ -4,6 +4,7 @@ use super::super::findings::{Finding, Law, Level, Rule};
 use super::super::frame::{Frame, Tally, member_ids};
 use super::Doubts;
 use crate::exact::Rational;
+use crate::exact::order;
 use crate::truss::Role;
 use num_traits::Signed;
 
@@ -56,7 +57,7 @@ fn groups(frame: &Frame) -> Vec<Group> {
         .filter(|&member| !frame.has_no_length(member))
         .map(|member| (frame.role(member), steps(member), member))
         .collect();
-    members.sort_unstable();
+    order::sort(&mut members);
     members
         .chunk_by(|s, t| (s.0, s.1) == (t.0, t.1))
         .map(|group| Group { role: group[0].0, steps: group[0].1, members: group.iter().map(|&(_, _, m)| m).collect() })
@@ -66,7 +67,7 @@ fn groups(frame: &Frame) -> Vec<Group> {
 /// The groups, greatest first.
 fn by_size(groups: &[Group]) -> Vec<usize> {
     let mut order: Vec<usize> = (0..groups.len()).collect();
-    order.sort_by_key(|&i| (std::cmp::Reverse(groups[i].members.len()), i));
+    order::sort_by_key(&mut order, |&i| (std::cmp::Reverse(groups[i].members.len()), i));
     order
 }
 

@@ -5,6 +5,7 @@ use super::super::frame::Frame;
 use super::judge::Judged;
 use super::lift::Velocities;
 use super::matrix::Matrix;
+use crate::exact::order;
 use crate::exact::{Orientation, Point, Rational, whole};
 use num_traits::{One, Zero};
 use std::cmp::Ordering;
@@ -59,9 +60,9 @@ pub(crate) fn place_for_member(frame: &Frame, matrix: &Matrix, velocities: &Velo
             beyond.into_iter().filter(|&b| would_stop(frame, velocities, &column, a, b)).map(|b| [a.min(b), a.max(b)]),
         );
     }
-    pairs.sort_unstable();
+    order::sort(&mut pairs);
     pairs.dedup();
-    pairs.sort_by(|&p, &q| frame.lattice.compare_quadrances(p, q));
+    order::sort_by(&mut pairs, |&p, &q| frame.lattice.compare_quadrances(p, q));
     pairs.into_iter().take(COMPARED).find(|&pair| is_open(frame, pair))
 }
 

@@ -8,6 +8,7 @@ use super::span::{Span, span_of, squares_of};
 use super::{Source, Stress};
 use crate::checks::close::meaning::{Axis, Condition, Function, Sense};
 use crate::checks::close::sides::Side;
+use crate::exact::order;
 use crate::exact::{Interval, Orientation, Point, Rational, whole};
 use crate::truss::{JointId, Truss};
 use num_traits::{One, Signed};
@@ -81,7 +82,7 @@ impl Frame {
             frame.add_ways(&[[side.joints[0], side.joints[1]], [side.joints[0], side.joints[2]]]);
             frame.sides.push(([a, b, c], if side.orientation == Orientation::Left { 1 } else { -1 }));
         }
-        frame.ways.sort_unstable();
+        order::sort(&mut frame.ways);
         frame.ways.dedup();
         frame.by_ends = frame.ways.iter().enumerate().map(|(way, ends)| (*ends, way)).collect();
         frame.find_triangles();
@@ -413,7 +414,7 @@ fn joints_of(stress: &Stress, used: &[&Condition], sides: &[&Side]) -> Vec<Joint
     joints.extend(sides.iter().flat_map(|side| side.joints));
     joints.extend(stress.turned);
     joints.retain(|joint| *joint != stress.origin);
-    joints.sort_unstable();
+    order::sort(&mut joints);
     joints.dedup();
     joints.insert(0, stress.origin);
     joints
