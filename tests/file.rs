@@ -479,11 +479,7 @@ fn a_hostile_file_of_the_full_size_is_refused_in_reasonable_time() {
         ("a list", fill("[", &|_| "0,".into(), "0]")),
         (
             "joints of a figure",
-            fill(
-                &(SHEET[..SHEET.rfind("\"D\", \"C\"").expect("the last figure")].to_string()),
-                &|_| "\"A\",".into(),
-                "\"D\"]}]}",
-            ),
+            fill(&SHEET[..SHEET.rfind("\"D\", \"C\"").expect("the last figure")], &|_| "\"A\",".into(), "\"D\"]}]}"),
         ),
         ("a text", format!("\"{}\"", "\\u0041".repeat(Limit::FILE_BYTES / 6 - 1))),
     ];

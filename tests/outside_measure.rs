@@ -364,11 +364,13 @@ fn special_spreads() {
     }
 }
 
+type Corners = [(i64, i64); 3];
+
 #[test]
 fn triangles_with_exact_spreads_satisfy_every_law() {
     // Corners, quadrances, sixteen times the squared area, spreads opposite them. Derived; the five laws are named at
     // wn.com "Spread (rational trigonometry)" (seen).
-    let table: [([(i64, i64); 3], [i64; 3], i64, [&str; 3]); 3] = [
+    let table: [(Corners, [i64; 3], i64, [&str; 3]); 3] = [
         ([(0, 0), (14, 0), (5, 12)], [225, 169, 196], 112_896, ["144/169", "16/25", "3136/4225"]),
         ([(0, 0), (4, 0), (0, 3)], [25, 9, 16], 576, ["1", "9/25", "16/25"]),
         ([(0, 0), (4, 0), (-5, 12)], [225, 169, 16], 9216, ["144/169", "16/25", "256/4225"]),
@@ -443,7 +445,7 @@ fn spread_polynomials() {
     for (n, expected) in (0..).zip(table) {
         let expected: Vec<BigInt> = expected.iter().map(|&c| BigInt::from(c)).collect();
         assert_eq!(coefficients(n), expected, "S_{n}");
-        let sign = |k: usize| if k % 2 == 0 { 1 } else { -1 };
+        let sign = |k: usize| if k.is_multiple_of(2) { 1 } else { -1 };
         let s = ratio(2, 7);
         let mut power = s.clone();
         let mut sum = whole(0);

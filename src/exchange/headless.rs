@@ -2,7 +2,7 @@
 
 use super::document::report_json;
 use super::file::read_truss;
-use super::words::report_text;
+use super::words::{on_one_line, report_text};
 use crate::checks::{Level, Limits, report};
 
 /// What `chordwright report` says about itself.
@@ -39,17 +39,18 @@ pub fn run_report(arguments: &[String], mut read: impl FnMut(&str) -> Result<Vec
         return Outcome { out: REPORT_HELP.into(), ..outcome };
     }
     if let Some(unknown) = arguments.iter().filter(is_option).find(|argument| *argument != "--json") {
-        return Outcome { err: format!("chordwright report: there is no option `{unknown}`\n"), status: 2, ..outcome };
+        return Outcome {
+            err: format!("chordwright report: there is no option `{}`\n", on_one_line(unknown)),
+            status: 2,
+            ..outcome
+        };
     }
     let json = arguments.iter().any(|argument| argument == "--json");
     let files: Vec<&String> = arguments.iter().filter(|argument| !is_option(argument)).collect();
     if files.is_empty() {
         return Outcome { err: format!("chordwright report: expected a file\n\n{REPORT_HELP}"), status: 2, ..outcome };
     }
-    for (index, file) in files.into_iter().enumerate() {
-        if index > 0 && !json {
-            outcome.out.push('\n');
-        }
+    for file in files {
         one_file(&mut outcome, file, json, read(file));
     }
     outcome
@@ -64,6 +65,8 @@ fn one_file(outcome: &mut Outcome, file: &str, json: bool, bytes: Result<Vec<u8>
                 outcome.out.push_str(&report_json(file, &truss, &answers));
                 outcome.out.push('\n');
             } else {
+                let blank_line = if outcome.out.is_empty() { "" } else { "\n" };
+                outcome.out.push_str(blank_line);
                 outcome.out.push_str(&report_text(file, &truss, &answers));
             }
             if answers.findings.iter().any(|finding| finding.level == Level::Fault) {
@@ -71,7 +74,7 @@ fn one_file(outcome: &mut Outcome, file: &str, json: bool, bytes: Result<Vec<u8>
             }
         }
         Err(error) => {
-            outcome.err.push_str(&format!("{file}: {error}\n"));
+            outcome.err.push_str(&format!("{}: {error}\n", on_one_line(file)));
             outcome.status = 2;
         }
     }

@@ -1,8 +1,8 @@
 //! A truss in the fragment of an address: versioned, compact, bounded, checked against damage.
 //!
 //! ```text
-//! link    = "1" base64url( mode, bytes )        version, then how the bytes are packed: 0 as they are, 1 deflated
-//! bytes   = content, 3 bytes of its SHA-256
+//! link    = "1" base64url( packed, check )      version; the check is the first 3 bytes of the SHA-256 of packed
+//! packed  = mode, content                       0: the content as it is, 1: deflated
 //! content = title, unit, step, joints, members, supports, figures     column by column
 //! ```
 //!
@@ -30,6 +30,9 @@ const MAX_BYTES: usize = 1024 * 1024;
 const VERSION: char = '1';
 /// Bytes of the checksum.
 const CHECK: usize = 3;
+/// Units and roles in the order of their codes, which never changes.
+const UNITS: [Unit; 5] = [Unit::In, Unit::Ft, Unit::Mm, Unit::Cm, Unit::M];
+const ROLES: [Role; 5] = [Role::TopChord, Role::BottomChord, Role::Web, Role::Post, Role::Other];
 
 /// Why a link could not be made or read.
 #[derive(Clone, Debug, PartialEq, Eq, Error)]
@@ -62,12 +65,12 @@ impl From<Damaged> for LinkError {
 pub fn to_link(truss: &Truss) -> Result<String, LinkError> {
     let mut writer = Writer::default();
     write_content(&mut writer, truss);
-    let mut content = writer.bytes;
-    let check = Sha256::digest(&content);
-    content.extend_from_slice(&check[..CHECK]);
+    let content = writer.bytes;
     let deflated = compress_to_vec(&content, 10);
     let (mode, bytes) = if deflated.len() < content.len() { (1, deflated) } else { (0, content) };
-    let packed: Vec<u8> = std::iter::once(mode).chain(bytes).collect();
+    let mut packed: Vec<u8> = std::iter::once(mode).chain(bytes).collect();
+    let check = Sha256::digest(&packed);
+    packed.extend_from_slice(&check[..CHECK]);
     let link = format!("{VERSION}{}", URL_SAFE_NO_PAD.encode(packed));
     if link.len() > MAX_LINK_CHARACTERS { Err(LinkError::TooLong(link.len())) } else { Ok(link) }
 }
@@ -88,16 +91,16 @@ pub fn from_link(link: &str) -> Result<Truss, LinkError> {
         None => return Err(LinkError::Damaged),
     }
     let packed = URL_SAFE_NO_PAD.decode(characters.as_str()).map_err(|_| LinkError::Damaged)?;
+    let (packed, check) = packed.split_at_checked(packed.len().wrapping_sub(CHECK)).ok_or(LinkError::Damaged)?;
+    if Sha256::digest(packed)[..CHECK] != *check {
+        return Err(LinkError::Damaged);
+    }
     let content = match packed.split_first() {
         Some((0, bytes)) => bytes.to_vec(),
         Some((1, bytes)) => decompress_to_vec_with_limit(bytes, MAX_BYTES).map_err(|_| LinkError::Damaged)?,
         _ => return Err(LinkError::Damaged),
     };
-    let (content, check) = content.split_at_checked(content.len().wrapping_sub(CHECK)).ok_or(LinkError::Damaged)?;
-    if Sha256::digest(content)[..CHECK] != *check {
-        return Err(LinkError::Damaged);
-    }
-    let mut reader = Reader::new(content);
+    let mut reader = Reader::new(&content);
     let truss = read_content(&mut reader)?;
     if !reader.is_done() {
         return Err(LinkError::Damaged);
@@ -304,7 +307,7 @@ fn read_joints(reader: &mut Reader, count: usize) -> Result<Vec<JointId>, Damage
 fn write_content(writer: &mut Writer, truss: &Truss) {
     let length = Grammar::Length(truss.unit);
     writer.text(&truss.title);
-    writer.number(position(&Unit::ALL, &truss.unit));
+    writer.number(position(&UNITS, &truss.unit));
     write_values(writer, &[(&truss.step, length)]);
     writer.number(truss.joints.len() as u64);
     write_marks(writer, &truss.joints.iter().map(|joint| joint.mark.as_str()).collect::<Vec<_>>());
@@ -313,7 +316,7 @@ fn write_content(writer: &mut Writer, truss: &Truss) {
     writer.runs(&truss.joints.iter().map(|joint| u64::from(joint.loose)).collect::<Vec<_>>());
     writer.number(truss.members.len() as u64);
     write_marks(writer, &truss.members.iter().map(|member| member.mark.as_str()).collect::<Vec<_>>());
-    writer.runs(&truss.members.iter().map(|member| position(&Role::ALL, &member.role)).collect::<Vec<_>>());
+    writer.runs(&truss.members.iter().map(|member| position(&ROLES, &member.role)).collect::<Vec<_>>());
     write_joints(writer, &truss.members.iter().map(|member| member.from).collect::<Vec<_>>());
     // The second end is told from the first: along a chord it is always the next joint.
     truss.members.iter().for_each(|member| writer.signed(i64::from(member.to.0) - i64::from(member.from.0)));
@@ -331,7 +334,7 @@ fn nth<T: Copy>(all: &[T], index: u64) -> Result<T, Damaged> {
 
 fn read_content(reader: &mut Reader) -> Result<Truss, Damaged> {
     let title = reader.text()?.to_string();
-    let unit = nth(&Unit::ALL, reader.number()?)?;
+    let unit = nth(&UNITS, reader.number()?)?;
     let step = read_values(reader, &[Grammar::Length(unit)])?.pop().ok_or(Damaged)?;
     let joints = read_joint_columns(reader, unit)?;
     let members = read_members(reader)?;
@@ -359,7 +362,7 @@ fn read_members(reader: &mut Reader) -> Result<Vec<Member>, Damaged> {
     for ((mark, role), from) in marks.into_iter().zip(roles).zip(from) {
         let to =
             i64::from(from.0).checked_add(reader.signed()?).and_then(|to| u32::try_from(to).ok()).ok_or(Damaged)?;
-        members.push(Member { mark, from, to: JointId(to), role: nth(&Role::ALL, role)? });
+        members.push(Member { mark, from, to: JointId(to), role: nth(&ROLES, role)? });
     }
     Ok(members)
 }

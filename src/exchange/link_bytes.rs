@@ -90,7 +90,7 @@ impl<'a> Reader<'a> {
 
     pub(super) fn text(&mut self) -> Result<&'a str, Damaged> {
         let length = self.count(self.rest.len())?;
-        let (text, rest) = self.rest.split_at(length);
+        let (text, rest) = self.rest.split_at_checked(length).ok_or(Damaged)?;
         self.rest = rest;
         std::str::from_utf8(text).map_err(|_| Damaged)
     }
@@ -134,5 +134,7 @@ mod tests {
         assert_eq!(Reader::new(&writer.bytes).runs(2), Err(Damaged), "a run beyond the end");
         assert_eq!(Reader::new(&[1, 0]).runs(3), Err(Damaged), "an empty run");
         assert_eq!(Reader::new(&[0xff; 20]).number(), Err(Damaged), "a number without end");
+        assert_eq!(Reader::new(&[2, 65]).text(), Err(Damaged), "a text that is longer than what is left");
+        assert_eq!(Reader::new(&[1, 65]).text(), Ok("A"));
     }
 }

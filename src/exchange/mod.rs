@@ -7,6 +7,8 @@ mod headless;
 mod json;
 mod link;
 mod link_bytes;
+#[cfg(feature = "schema")]
+mod schema;
 mod words;
 mod write;
 
@@ -15,6 +17,8 @@ pub use file::{ReadError, read_truss};
 pub use fingerprint::fingerprint;
 pub use headless::{Outcome, REPORT_HELP, run_report};
 pub use link::{LinkError, MAX_LINK_CHARACTERS, from_link, to_link};
+#[cfg(feature = "schema")]
+pub use schema::truss_schema;
 pub use words::report_text;
 pub use write::write_truss;
 

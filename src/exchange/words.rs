@@ -6,7 +6,8 @@ use crate::truss::Truss;
 
 /// The report in words: the five answers with their findings, the schedules, and the notice.
 pub fn report_text(file: &str, truss: &Truss, report: &Report) -> String {
-    let mut text = format!("{file}: {}\n", if truss.title.is_empty() { "untitled truss" } else { &truss.title });
+    let title = if truss.title.is_empty() { "untitled truss" } else { &truss.title };
+    let mut text = format!("{}: {}\n", on_one_line(file), on_one_line(title));
     text.push_str(&format!(
         "{} joints, {} members, {} figures; fingerprint {}\n",
         truss.joints.len(),
@@ -26,6 +27,11 @@ pub fn report_text(file: &str, truss: &Truss, report: &Report) -> String {
     text.push_str(&schedule(truss, report));
     text.push_str(&format!("\n{NOTICE}\n"));
     text
+}
+
+/// A text without what would move the cursor or colour the screen: control characters as they are escaped in sources.
+pub(super) fn on_one_line(text: &str) -> String {
+    text.chars().map(|c| if c.is_control() { c.escape_default().to_string() } else { c.to_string() }).collect()
 }
 
 fn answer(report: &Report, question: Question) -> String {
