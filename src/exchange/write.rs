@@ -29,7 +29,7 @@ fn list(text: &mut String, name: &str, rows: impl Iterator<Item = Row>) {
 
 /// A JSON string.
 fn quoted(text: &str) -> String {
-    serde_json::Value::from(text).to_string()
+    serde_json::to_string(text).unwrap_or_default()
 }
 
 /// The entries of one object, in order.

@@ -187,7 +187,7 @@ impl Scanner<'_> {
     fn word(&mut self) -> Result<Piece, ValueError> {
         let start = self.next;
         let word = self.take_while(|c| c.is_alphabetic() && !matches!(c, 'ʹ' | 'ʺ'));
-        let unit = match word.to_lowercase().as_str() {
+        let unit = match word.to_ascii_lowercase().as_str() {
             "mm" => Unit::Mm,
             "cm" => Unit::Cm,
             "m" => Unit::M,

@@ -115,7 +115,7 @@ fn file_name(title: &str) -> String {
     let mut name = String::new();
     for c in title.chars().take(60) {
         match c {
-            c if c.is_alphanumeric() => name.extend(c.to_lowercase()),
+            c if c.is_alphanumeric() => name.push(c.to_ascii_lowercase()),
             _ if name.ends_with('-') || name.is_empty() => {}
             _ => name.push('-'),
         }

@@ -25,7 +25,7 @@ fn answer(tile: &AnswerTile, on: &Callback<PageEvent>) -> Html {
     let choose = on.reform(move |_: MouseEvent| PageEvent::QuestionChosen(question));
     let class = classes!("answer", tile.chosen.then_some("chosen"), tile.stale.then_some("stale"));
     html! {
-        <button {class} aria-pressed={tile.chosen.to_string()} onclick={choose} data-question={format!("{question:?}").to_lowercase()}>
+        <button {class} aria-pressed={tile.chosen.to_string()} onclick={choose} data-question={format!("{question:?}").to_ascii_lowercase()}>
             <span class="question">{ question.text() }</span>
             <span class="verdict">{ sign(tile.sign) }<span class={tile.sign.class()}>{ &tile.answer }</span></span>
             <span class="detail" title={tile.detail.clone()}>{ &tile.detail }</span>

@@ -26,7 +26,7 @@ pub(super) fn Book(props: &BookProps) -> Html {
                 { for Table::ALL.iter().zip(view.counts).map(|(&table, count)| tab(table, count, view.book, on)) }
             </div>
             <div class="table-place">
-                <table class={format!("table-{}", view.book.title().to_lowercase())}>
+                <table class={format!("table-{}", view.book.title().to_ascii_lowercase())}>
                     <thead><tr>{ for titles.iter().map(|title| html! { <th scope="col">{ *title }</th> }) }<th class="narrow"></th></tr></thead>
                     <tbody>{ for view.rows.iter().enumerate().map(|(index, row)| table_row(props, index, row)) }</tbody>
                 </table>
