@@ -3,7 +3,7 @@
 mod trusses;
 
 use std::time::Instant;
-use trusses::{lattice, long_truss, usual};
+use trusses::{bare_lattice, lattice, long_truss, usual};
 
 #[test]
 #[ignore = "prints times only"]
@@ -14,13 +14,13 @@ fn times() {
         let report = usual(&truss);
         println!("long {members}: {:?} {}", start.elapsed(), report.answers.stands.summary);
     }
-    for side in [40, 80] {
-        let mut truss = lattice(side);
-        for what in ["whole", "one out"] {
+    for (name, truss) in [("braced", lattice(80)), ("bare", bare_lattice(98))] {
+        let mut truss = truss;
+        for what in ["whole", "one out", "two out"] {
             let start = Instant::now();
             let report = usual(&truss);
             let (count, moving) = (truss.members.len(), report.answers.stands.motion.len());
-            println!("lattice {count} {what}: {:?} {} ({moving} move)", start.elapsed(), report.answers.stands.summary);
+            println!("{name} {count} {what}: {:?} {} ({moving} move)", start.elapsed(), report.answers.stands.summary);
             truss.members.remove(count / 2);
         }
     }

@@ -3,7 +3,7 @@
 mod trusses;
 
 use chordwright::exact::{
-    Direction, Lattice, Point, Rational, Tier, compare_directions, orientation, quadrance, ratio, spread, whole,
+    Direction, Lattice, Point, Rational, Tier, compare_directions, orientation, ratio, spread, whole,
 };
 use num_bigint::BigInt;
 use std::cmp::Ordering;
@@ -91,7 +91,7 @@ fn compare_coarse(lattice: &Lattice, [a, b]: [usize; 2]) {
 fn every_tier_answers_as_plain_fractions_do() {
     let mut scatter = Scatter::new(3);
     let mut seen = [0; 3];
-    for round in 0..120 {
+    for round in 0..48 {
         let kind = KINDS[round % KINDS.len()];
         let points: Vec<Point> = (0..9).map(|_| Point { x: kind(&mut scatter), y: kind(&mut scatter) }).collect();
         for tier in [Tier::Small, Tier::Wide, Tier::Fractions] {
@@ -102,7 +102,7 @@ fn every_tier_answers_as_plain_fractions_do() {
         }
         compare_all(&points, &Lattice::new(&points), &mut scatter);
     }
-    assert!(seen.iter().all(|&count| count >= 40), "each tier was compared: {seen:?}");
+    assert!(seen.iter().all(|&count| count >= 16), "each tier was compared: {seen:?}");
 }
 
 #[test]

@@ -7,7 +7,7 @@ use chordwright::exact::{Rational, Vector, whole};
 use chordwright::truss::{SupportKind, Truss};
 use num_traits::Zero;
 use serde_json::Value;
-use trusses::{Scatter, fraction, frame, of_rule, only, pinned, rational_frame, rolling, usual};
+use trusses::{Scatter, bare_lattice, fraction, frame, of_rule, only, pinned, rational_frame, rolling, usual};
 
 /// The rank of the rigidity matrix, by elimination of all of it in fractions: the slow twin.
 fn plain_rank(truss: &Truss) -> usize {
@@ -209,6 +209,21 @@ fn an_empty_truss_and_one_of_unused_joints_have_nothing_to_judge() {
     }
     let one_pin = usual(&pinned(frame(&[(0, 0)], &[]), 0)).answers.stands;
     assert_eq!((one_pin.state, one_pin.rank, one_pin.unknowns), (StandsState::Rigid, 2, 2));
+}
+
+#[test]
+fn a_lattice_with_just_enough_stands_and_with_one_member_less_moves() {
+    let mut truss = bare_lattice(20);
+    let stands = usual(&truss).answers.stands;
+    assert_eq!((stands.state, stands.spare_members), (StandsState::Rigid, 0));
+    for place in [0, 300, 700] {
+        truss = bare_lattice(20);
+        truss.members.remove(place);
+        let report = usual(&truss);
+        assert_eq!(report.answers.stands.state, StandsState::Mechanism);
+        assert_eq!(report.answers.stands.rank + 1, report.answers.stands.unknowns);
+        assert_motion(&truss, &report);
+    }
 }
 
 /// A small frame on few places, so that much is in line, parallel or in one place.

@@ -125,6 +125,29 @@ pub(crate) fn lattice(side: usize) -> Truss {
     rolling(pinned(frame(&places, &members), 0), at(side, 0), (0, 1))
 }
 
+/// A square lattice of straight lines with diagonals in the first row and column of fields only: just enough to stand, on
+/// a pin and a roller.
+pub(crate) fn bare_lattice(side: usize) -> Truss {
+    let at = |x: usize, y: usize| x * (side + 1) + y;
+    let mut places = Vec::new();
+    let mut members = Vec::new();
+    for x in 0..=side {
+        for y in 0..=side {
+            places.push((100 * x as i64, 80 * y as i64));
+            if x < side {
+                members.push((at(x, y), at(x + 1, y)));
+            }
+            if y < side {
+                members.push((at(x, y), at(x, y + 1)));
+            }
+            if x < side && y < side && (x == 0 || y == 0) {
+                members.push((at(x, y), at(x + 1, y + 1)));
+            }
+        }
+    }
+    rolling(pinned(frame(&places, &members), 0), at(side, 0), (0, 1))
+}
+
 /// Numbers without a pattern, always the same for the same seed.
 pub(crate) struct Scatter(chordwright::exact::modular::Scatter);
 

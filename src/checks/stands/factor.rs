@@ -222,12 +222,11 @@ impl<'m> Factor<'m> {
         let mut filled: Vec<usize> = self.pattern.columns.clone();
         let mut work: Vec<Block> = vec![[0; 4]; count];
         let mut reach = Reach::new(count);
-        for row in 0..count {
+        for (row, mut pivot) in diagonal.into_iter().enumerate() {
             let entries = self.pattern.starts[row] as usize..self.pattern.starts[row + 1] as usize;
             for entry in entries {
                 work[self.pattern.left[entry] as usize] = gram[entry];
             }
-            let mut pivot = diagonal[row];
             for &column in reach.of(self.pattern, row) {
                 self.eliminate(row, column as usize, &mut filled, &mut work, &mut pivot)?;
             }

@@ -189,11 +189,11 @@ fn determinant(mut rows: Vec<Vec<Rational>>) -> Rational {
             product *= whole(-1);
         }
         product *= rows[k][k].clone();
-        for i in k + 1..rows.len() {
-            let factor = &rows[i][k] / &rows[k][k];
-            for c in k..rows.len() {
-                rows[i][c] = &rows[i][c] - &factor * &rows[k][c];
-            }
+        let (done, rest) = rows.split_at_mut(k + 1);
+        let pivot_row = &done[k];
+        for row in rest {
+            let factor = &row[k] / &pivot_row[k];
+            row.iter_mut().zip(pivot_row).for_each(|(entry, other)| *entry -= &factor * other);
         }
     }
     product
