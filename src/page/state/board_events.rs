@@ -60,7 +60,7 @@ fn down(state: &mut State, id: i32, at: Pixel, button: Button, held: Modifiers, 
     state.pointer = Some(at);
     state.drag = match button {
         Button::Main => {
-            let on = thing_at(&state.truss, &state.points(), &state.camera, at, finger);
+            let on = thing_at(&state.truss, &state.places, &state.camera, at, finger);
             state.pointed = on;
             Drag::Pressed { id, at, on, extend: held.shift || held.control }
         }
@@ -71,7 +71,7 @@ fn down(state: &mut State, id: i32, at: Pixel, button: Button, held: Modifiers, 
 fn moved(state: &mut State, id: i32, at: Pixel, held: Modifiers, effects: &mut Vec<Effect>) {
     match state.drag.clone() {
         Drag::None => {
-            state.pointed = thing_at(&state.truss, &state.points(), &state.camera, at, false);
+            state.pointed = thing_at(&state.truss, &state.places, &state.camera, at, false);
             state.pointer = (state.pen == Pen::Down).then_some(at);
         }
         Drag::Pinch { fingers } => pinch(state, fingers, id, at),
@@ -166,7 +166,7 @@ fn up(state: &mut State, id: i32, at: Pixel, effects: &mut Vec<Effect>) {
         Drag::Move { joint, to, .. } => draw::move_joint(state, joint, &to, effects),
         Drag::Member { from, to, onto, .. } => end_member(state, from, to, onto, effects),
         Drag::Frame { from, to, .. } => {
-            state.selection = within(&state.truss, &state.points(), &state.camera, from, to);
+            state.selection = within(&state.truss, &state.places, &state.camera, from, to);
         }
         Drag::None | Drag::Pan { .. } | Drag::Pinch { .. } => {}
     }

@@ -51,10 +51,11 @@ impl Pixel {
 impl Camera {
     /// Where a point of the plane is on the board.
     pub fn pixel(&self, point: &Point) -> Pixel {
-        self.place(to_f64(&point.x), to_f64(&point.y))
+        self.at(place_of(point))
     }
 
-    fn place(&self, x: f64, y: f64) -> Pixel {
+    /// Where a place of the plane is on the board, given in units of the sheet.
+    pub fn at(&self, (x, y): Place) -> Pixel {
         Pixel::new(self.origin.x + x * self.scale, self.origin.y - y * self.scale)
     }
 
@@ -82,8 +83,7 @@ impl Camera {
     }
 
     /// The camera that shows all points on a board of this size, with room for dimension strings.
-    pub fn fitted(points: &[Point], (width, height): (f64, f64)) -> Camera {
-        let places: Vec<(f64, f64)> = points.iter().map(|p| (to_f64(&p.x), to_f64(&p.y))).collect();
+    pub fn fitted(places: &[Place], (width, height): (f64, f64)) -> Camera {
         let Some(&first) = places.first() else {
             return Camera { origin: Pixel::new(width * 0.15, height * 0.65), ..Camera::default() };
         };
@@ -99,6 +99,14 @@ impl Camera {
             origin: Pixel::new(left + room.0 / 2.0 - centre.0 * scale, above + room.1 / 2.0 + centre.1 * scale),
         }
     }
+}
+
+/// A place of the plane in units of the sheet, near enough for pixels.
+pub type Place = (f64, f64);
+
+/// The place of a point, for pixels only.
+pub(super) fn place_of(point: &Point) -> Place {
+    (to_f64(&point.x), to_f64(&point.y))
 }
 
 /// The nearest floating-point number, for pixels only.
@@ -121,17 +129,17 @@ mod tests {
 
     #[test]
     fn a_fitted_truss_is_wholly_on_the_board() {
-        let points = [Point::whole(0, 0), Point::whole(480, 0), Point::whole(240, 96)];
-        let camera = Camera::fitted(&points, (900.0, 500.0));
-        for pixel in points.iter().map(|p| camera.pixel(p)) {
+        let places = [(0.0, 0.0), (480.0, 0.0), (240.0, 96.0)];
+        let camera = Camera::fitted(&places, (900.0, 500.0));
+        for pixel in places.map(|place| camera.at(place)) {
             assert!((0.0..900.0).contains(&pixel.x) && (0.0..500.0).contains(&pixel.y), "{pixel:?}");
         }
     }
 
     #[test]
     fn nothing_and_one_joint_can_be_fitted() {
-        for points in [vec![], vec![Point::whole(7, 7)], vec![Point::whole(7, 7); 3]] {
-            assert!(Camera::fitted(&points, (10.0, 10.0)).scale.is_finite(), "{points:?}");
+        for places in [vec![], vec![(7.0, 7.0)], vec![(7.0, 7.0); 3]] {
+            assert!(Camera::fitted(&places, (10.0, 10.0)).scale.is_finite(), "{places:?}");
         }
     }
 }

@@ -1,14 +1,14 @@
 //! What is under a pixel.
 
-use super::camera::{Camera, Pixel};
+use super::camera::{Camera, Pixel, Place};
 use super::model::Thing;
 use crate::exact::Point;
 use crate::truss::{JointId, MemberId, Selection, Truss};
 
 /// The joint within reach, else the member within reach: the nearest of each.
-pub(super) fn thing_at(truss: &Truss, points: &[Point], camera: &Camera, at: Pixel, finger: bool) -> Option<Thing> {
+pub(super) fn thing_at(truss: &Truss, places: &[Place], camera: &Camera, at: Pixel, finger: bool) -> Option<Thing> {
     let (joint_reach, member_reach) = if finger { (24.0, 14.0) } else { (10.0, 6.0) };
-    let pixels: Vec<Pixel> = points.iter().map(|point| camera.pixel(point)).collect();
+    let pixels: Vec<Pixel> = places.iter().map(|&place| camera.at(place)).collect();
     joint_near(&pixels, at, joint_reach)
         .map(Thing::Joint)
         .or_else(|| member_near(truss, &pixels, at, member_reach).map(Thing::Member))
@@ -44,11 +44,11 @@ fn segment_distance(p: Pixel, a: Pixel, b: Pixel) -> f64 {
 }
 
 /// Everything that lies wholly within the frame between two pixels.
-pub(super) fn within(truss: &Truss, points: &[Point], camera: &Camera, a: Pixel, b: Pixel) -> Selection {
-    let inside: Vec<bool> = points
+pub(super) fn within(truss: &Truss, places: &[Place], camera: &Camera, a: Pixel, b: Pixel) -> Selection {
+    let inside: Vec<bool> = places
         .iter()
-        .map(|point| {
-            let p = camera.pixel(point);
+        .map(|&place| {
+            let p = camera.at(place);
             p.x >= a.x.min(b.x) && p.x <= a.x.max(b.x) && p.y >= a.y.min(b.y) && p.y <= a.y.max(b.y)
         })
         .collect();

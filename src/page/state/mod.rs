@@ -25,7 +25,7 @@ mod snap;
 mod update;
 pub mod view;
 
-pub use camera::{Camera, Pixel};
+pub use camera::{Camera, Pixel, Place};
 pub use cells::{Cell, Column, Row, understood};
 pub use checked::Checked;
 pub use event::{Button, Effect, Event, KeyPress, Modifiers, PointerAct};

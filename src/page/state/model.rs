@@ -1,6 +1,6 @@
 //! The state of the page.
 
-use super::camera::{Camera, Pixel};
+use super::camera::{Camera, Pixel, Place, place_of};
 use super::cells::Cell;
 use super::checked::Checked;
 use super::history::History;
@@ -42,6 +42,9 @@ pub struct State {
     pub pen: Pen,
     /// Which part of the plane the board shows, and how large.
     pub camera: Camera,
+    /// Where the joints are shown, in units of the sheet: what [`State::points`] says, near enough for pixels. Kept by
+    /// `update`, so that a pointer that moves over a large truss costs little.
+    pub places: Rc<Vec<Place>>,
     /// The size of the board in pixels.
     pub board_size: (f64, f64),
     /// True while the board shows the whole truss, and is to go on doing so when its size changes.
@@ -253,6 +256,16 @@ impl State {
             Shown::Without(index) => checked.report.answers.close.suspects.get(index).map(|s| s.layout.clone()),
         });
         layout.filter(|points| points.len() == self.truss.joints.len()).unwrap_or_else(|| self.truss.points())
+    }
+
+    /// Brings [`State::places`] to what is shown now.
+    pub(super) fn find_places(&mut self) {
+        self.places = Rc::new(self.points().iter().map(place_of).collect());
+    }
+
+    /// True when both show their joints at the same places.
+    pub(super) fn shows_the_same_places(&self, other: &State) -> bool {
+        Rc::ptr_eq(&self.truss, &other.truss) && self.checked == other.checked && self.shown == other.shown
     }
 
     /// True when the board shows the layout without this suspect: asked for, or because it is the only one.

@@ -16,6 +16,9 @@ pub fn update(state: &State, event: Event) -> (State, Vec<Effect>) {
     let mut next = state.clone();
     let mut effects = Vec::new();
     apply(&mut next, event, &mut effects);
+    if !next.shows_the_same_places(state) {
+        next.find_places();
+    }
     (next, effects)
 }
 
@@ -181,7 +184,8 @@ fn take_kept(state: &mut State, effects: &mut Vec<Effect>) {
 /// Shows the whole truss.
 pub(super) fn fit(state: &mut State) {
     if state.board_size.0 > 0.0 {
-        state.camera = Camera::fitted(&state.points(), state.board_size);
+        state.find_places();
+        state.camera = Camera::fitted(&state.places, state.board_size);
     }
     state.fitted = true;
 }

@@ -52,7 +52,7 @@ pub(super) struct Board<'a> {
 
 impl<'a> Board<'a> {
     pub(super) fn new(state: &'a State) -> Board<'a> {
-        let pixels = state.points().iter().map(|point| state.camera.pixel(point)).collect();
+        let pixels = state.places.iter().map(|&place| state.camera.at(place)).collect();
         Board { state, truss: &state.truss, camera: state.camera, pixels, doubtful: doubtful(state) }
     }
 

@@ -3,7 +3,7 @@
 use super::board::{DrawingView, drawing_view};
 use super::book::{RowView, book_view, column_titles};
 use crate::measure::{Sheet, pretty};
-use crate::page::state::{Book, Camera, Shown, State};
+use crate::page::state::{Book, Camera, State};
 use crate::truss::Selection;
 
 /// The printed sheet.
@@ -69,18 +69,16 @@ pub fn sheet_view(state: &State) -> Option<SheetView> {
 
 /// The drawing alone, with nothing selected or opened, fitted to the paper.
 fn drawing(state: &State) -> (DrawingView, f64) {
-    let points = state.points();
-    let wide = Camera::fitted(&points, (PAPER, 10_000.0));
-    let heights = points.iter().map(|point| wide.pixel(point).y);
+    let wide = Camera::fitted(&state.places, (PAPER, 10_000.0));
+    let heights = state.places.iter().map(|&place| wide.at(place).y);
     let span = heights.clone().fold(f64::MIN, f64::max) - heights.fold(f64::MAX, f64::min);
     let height = (span + 180.0).clamp(HEIGHTS.0, HEIGHTS.1);
     let board_size = (PAPER, height);
     let paper = State {
-        camera: Camera::fitted(&points, board_size),
+        camera: Camera::fitted(&state.places, board_size),
         board_size,
         selection: Selection::default(),
         open_finding: None,
-        shown: if state.shown == Shown::Sketch { Shown::Sketch } else { Shown::Layout },
         ..state.clone()
     };
     (drawing_view(&paper), height)
