@@ -1,6 +1,6 @@
 //! Reading a truss file: everything that is wrong is told, with where it is and what was expected.
 
-use super::json::Node;
+use super::json::{Node, parse};
 use crate::measure::{Unit, ValueError, Written, parse_degrees, parse_length, parse_pitch, parse_plain};
 use crate::truss::{
     Figure, FigureKind, Joint, JointId, Limit, Member, Role, Support, SupportKind, Truss, mark_problem,
@@ -56,7 +56,7 @@ pub fn read_truss(bytes: &[u8]) -> Result<Truss, ReadError> {
     let text = std::str::from_utf8(bytes)
         .map_err(|error| ReadError::one(format!("byte {}: not UTF-8 text", error.valid_up_to() + 1)))?;
     let text = text.strip_prefix('\u{feff}').unwrap_or(text);
-    let node: Node = serde_json::from_str(text).map_err(|error| ReadError::one(json_words(&error)))?;
+    let node = parse(text).map_err(|error| ReadError::one(json_words(&error)))?;
     let mut reader = Reader::default();
     let truss = reader.truss(&node);
     match truss.filter(|_| reader.problems.is_empty()) {
@@ -175,7 +175,7 @@ impl Reader {
         match keys.take(key) {
             None => Some(&[]),
             Some(Node::List(items)) if items.len() > limit => {
-                self.wrong(key, format!("{} {key}: more than the limit of {limit}", items.len()))
+                self.wrong(key, format!("more than the limit of {limit} {key}"))
             }
             Some(Node::List(items)) => Some(items),
             Some(other) => self.wrong(key, format!("expected a list, found {}", other.words())),
@@ -197,7 +197,7 @@ impl Reader {
         let figures = self.list(&mut keys, "figures", Limit::FIGURES)?;
         self.no_more(keys);
         let joints = self.each(joints, "joints", Reader::joint);
-        self.marks = joints.iter().enumerate().rev().map(|(i, joint)| (joint.mark.clone(), JointId::new(i))).collect();
+        self.name_joints(&joints);
         Some(Truss {
             title: title?.to_string(),
             unit: self.unit,
@@ -207,6 +207,18 @@ impl Reader {
             figures: self.each(figures, "figures", Reader::figure),
             joints,
         })
+    }
+
+    /// Remembers which joint has which mark. A mark that is used twice is told here, before anything that names it.
+    fn name_joints(&mut self, joints: &[Joint]) {
+        for (index, joint) in joints.iter().enumerate() {
+            if self.marks.insert(joint.mark.clone(), JointId::new(index)).is_some() {
+                self.wrong::<()>(
+                    "joints",
+                    format!("the mark {} is used twice; expected each mark once", quoted(&joint.mark)),
+                );
+            }
+        }
     }
 
     fn version(&mut self, keys: &mut Keys) -> Option<()> {
@@ -246,10 +258,8 @@ impl Reader {
         let text = match node {
             Node::Text(text) | Node::Whole(text) => text,
             Node::Fraction => {
-                return self.wrong(
-                    place,
-                    "a JSON number that is not a small whole number is not exact; write it as a text, such as \"10.5\"",
-                );
+                return self
+                    .wrong(place, "a JSON number with a fraction is not exact; write it as a text, such as \"10.5\"");
             }
             other => {
                 return self

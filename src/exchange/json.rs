@@ -1,7 +1,16 @@
 //! JSON as it was written: keys in order, repeated keys kept, numbers never made floating.
 
-use serde::de::{Deserialize, Deserializer, Error, MapAccess, SeqAccess, Visitor};
+use crate::truss::Limit;
+use serde::de::{Deserialize, Deserializer, Error, IgnoredAny, MapAccess, SeqAccess, Visitor};
+use std::borrow::Cow;
 use std::fmt;
+
+/// Items of a list that are kept: one more than any list may have. The rest is read over, so that a hostile file does not
+/// fill the memory.
+const KEPT: usize = if Limit::MEMBERS > Limit::FIGURES { Limit::MEMBERS } else { Limit::FIGURES } + 1;
+
+/// Whole numbers with fewer digits fit a number of the machine.
+const SHORT_DIGITS: usize = 19;
 
 /// A JSON value as it stands in the text.
 #[derive(Clone, Debug, PartialEq)]
@@ -10,7 +19,7 @@ pub(super) enum Node {
     Bool(bool),
     /// A whole number, as its digits.
     Whole(String),
-    /// A number with a fraction or an exponent, or one too large for a whole number of the machine.
+    /// A number with a fraction or an exponent.
     Fraction,
     Text(String),
     List(Vec<Node>),
@@ -29,6 +38,63 @@ impl Node {
             Node::Map(_) => "an object",
         }
     }
+}
+
+/// Reads JSON as it was written. Very long whole numbers come as texts of their digits.
+///
+/// # Errors
+///
+/// When the text is not JSON; with line and column.
+pub(super) fn parse(text: &str) -> Result<Node, serde_json::Error> {
+    serde_json::from_str(&with_long_numbers_quoted(text))
+}
+
+/// The text with quotation marks around whole numbers that are too long for a number of the machine, which would be made
+/// floating otherwise.
+fn with_long_numbers_quoted(text: &str) -> Cow<'_, str> {
+    let mut quoted = String::new();
+    let mut copied = 0;
+    for (start, end) in long_numbers(text.as_bytes()) {
+        quoted.push_str(text.get(copied..start).unwrap_or_default());
+        quoted.extend(["\"", text.get(start..end).unwrap_or_default(), "\""]);
+        copied = end;
+    }
+    if copied == 0 {
+        return Cow::Borrowed(text);
+    }
+    quoted.push_str(text.get(copied..).unwrap_or_default());
+    Cow::Owned(quoted)
+}
+
+/// Where long whole numbers stand outside of texts.
+fn long_numbers(bytes: &[u8]) -> Vec<(usize, usize)> {
+    let at = |index: usize| bytes.get(index).copied().unwrap_or(b' ');
+    let mut found = Vec::new();
+    let (mut index, mut in_text) = (0, false);
+    while index < bytes.len() {
+        match at(index) {
+            b'"' => in_text = !in_text,
+            b'\\' if in_text => index += 1,
+            b'-' | b'0'..=b'9' if !in_text => {
+                let start = index;
+                let is_part = |&b: &u8| matches!(b, b'0'..=b'9' | b'-' | b'+' | b'.' | b'e' | b'E');
+                let length = bytes.get(start..).unwrap_or_default().iter().take_while(|b| is_part(b)).count();
+                let number = bytes.get(start..start + length).unwrap_or_default();
+                if is_long_whole(number) {
+                    found.push((start, start + length));
+                }
+                index += length - 1;
+            }
+            _ => {}
+        }
+        index += 1;
+    }
+    found
+}
+
+fn is_long_whole(number: &[u8]) -> bool {
+    let digits = number.strip_prefix(b"-").unwrap_or(number);
+    digits.len() >= SHORT_DIGITS && digits.first() != Some(&b'0') && digits.iter().all(u8::is_ascii_digit)
 }
 
 struct NodeVisitor;
@@ -70,9 +136,16 @@ impl<'de> Visitor<'de> for NodeVisitor {
 
     fn visit_seq<A: SeqAccess<'de>>(self, mut items: A) -> Result<Node, A::Error> {
         let mut list = Vec::new();
-        while let Some(item) = items.next_element()? {
-            list.push(item);
+        while list.len() < KEPT {
+            match items.next_element()? {
+                Some(item) => list.push(item),
+                None => break,
+            }
         }
+        if list.len() == KEPT {
+            while items.next_element::<IgnoredAny>()?.is_some() {}
+        }
+        list.shrink_to_fit();
         Ok(Node::List(list))
     }
 
@@ -81,6 +154,7 @@ impl<'de> Visitor<'de> for NodeVisitor {
         while let Some(entry) = entries.next_entry()? {
             map.push(entry);
         }
+        map.shrink_to_fit();
         Ok(Node::Map(map))
     }
 }
@@ -88,5 +162,29 @@ impl<'de> Visitor<'de> for NodeVisitor {
 impl<'de> Deserialize<'de> for Node {
     fn deserialize<D: Deserializer<'de>>(deserializer: D) -> Result<Node, D::Error> {
         deserializer.deserialize_any(NodeVisitor)
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn long_whole_numbers_keep_their_digits() {
+        let long = "1234567890123456789012345678901234567890";
+        for (text, expected) in [
+            (format!("[{long}]"), Node::List(vec![Node::Text(long.into())])),
+            (format!("-{long}"), Node::Text(format!("-{long}"))),
+            (format!("\"{long}\""), Node::Text(long.into())),
+            (format!("\"\\\"{long}\""), Node::Text(format!("\"{long}"))),
+            (format!("{long}.5"), Node::Fraction),
+            ("1e3".into(), Node::Fraction),
+            ("-12".into(), Node::Whole("-12".into())),
+        ] {
+            assert_eq!(parse(&text).ok(), Some(expected), "{text}");
+        }
+        for bad in [format!("0{long}"), format!("--{long}"), format!("{long}-{long}"), format!("{long} {long}")] {
+            assert!(parse(&bad).is_err(), "{bad}");
+        }
     }
 }

@@ -91,7 +91,8 @@ impl Truss {
     pub fn edited(&self, edit: &Edit) -> Result<Truss, EditError> {
         let mut truss = self.clone();
         truss.apply(edit)?;
-        Ok(truss)
+        // What cannot be written and read again would be lost when it is saved.
+        truss.too_long().map_or(Ok(truss), |text| Err(EditError(text)))
     }
 
     fn apply(&mut self, edit: &Edit) -> Result<(), EditError> {
