@@ -1,6 +1,6 @@
 //! Reading a truss file: everything that is wrong is told, with where it is and what was expected.
 
-use super::json::{Node, parse};
+use super::json::{Node, TOO_DEEP, TOO_MANY_KEYS, parse};
 use crate::measure::{Unit, ValueError, Written, parse_degrees, parse_length, parse_pitch, parse_plain};
 use crate::truss::{
     Figure, FigureKind, Joint, JointId, Limit, Member, Role, Support, SupportKind, Truss, mark_problem,
@@ -75,7 +75,7 @@ fn json_words(error: &serde_json::Error) -> String {
     let words = words.split(" at line ").next().unwrap_or_default();
     match error.classify() {
         serde_json::error::Category::Eof => format!("{at}: the text ends too early"),
-        _ if words.contains("recursion limit") => format!("{at}: nested too deeply for a truss file"),
+        _ if words == TOO_DEEP || words == TOO_MANY_KEYS => format!("{at}: {words}"),
         _ => format!("{at}: not JSON: {words}"),
     }
 }
@@ -223,11 +223,13 @@ impl Reader {
 
     fn version(&mut self, keys: &mut Keys) -> Option<()> {
         match self.need(keys, "chordwright")? {
-            Node::Whole(version) if version == VERSION => Some(()),
-            Node::Text(version) if version == VERSION => Some(()),
-            Node::Whole(version) | Node::Text(version) => {
-                self.wrong("chordwright", format!("version {} is not known here; expected {VERSION}", quoted(version)))
-            }
+            node @ (Node::Whole(_) | Node::Text(_)) => match node.written() {
+                version if version == VERSION => Some(()),
+                version => {
+                    let text = format!("version {} is not known here; expected {VERSION}", quoted(&version));
+                    self.wrong("chordwright", text)
+                }
+            },
             other => self.wrong("chordwright", format!("expected {VERSION}, found {}", other.words())),
         }
     }
@@ -256,7 +258,7 @@ impl Reader {
         parse: impl Fn(&str) -> Result<Written, ValueError>,
     ) -> Option<Written> {
         let text = match node {
-            Node::Text(text) | Node::Whole(text) => text,
+            Node::Text(_) | Node::Whole(_) => node.written(),
             Node::Fraction => {
                 return self
                     .wrong(place, "a JSON number with a fraction is not exact; write it as a text, such as \"10.5\"");
@@ -266,9 +268,9 @@ impl Reader {
                     .wrong(place, format!("expected a value such as \"8'-3 3/8\\\"\", found {}", other.words()));
             }
         };
-        match parse(text) {
+        match parse(&text) {
             Ok(written) => Some(written),
-            Err(error) => self.wrong(place, format!("{error} (in {})", quoted(text))),
+            Err(error) => self.wrong(place, format!("{error} (in {})", quoted(&text))),
         }
     }
 
