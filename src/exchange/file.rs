@@ -213,10 +213,8 @@ impl Reader {
     fn name_joints(&mut self, joints: &[Joint]) {
         for (index, joint) in joints.iter().enumerate() {
             if self.marks.insert(joint.mark.clone(), JointId::new(index)).is_some() {
-                self.wrong::<()>(
-                    "joints",
-                    format!("the mark {} is used twice; expected each mark once", quoted(&joint.mark)),
-                );
+                let text = format!("joint mark {} is used twice; expected each mark once", quoted(&joint.mark));
+                self.wrong::<()>("", text);
             }
         }
     }
