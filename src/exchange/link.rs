@@ -457,7 +457,13 @@ fn write_figures(writer: &mut Writer, truss: &Truss) {
 }
 
 fn values_of(figure: &Figure, kind: u64, unit: Unit) -> Vec<(&Written, Grammar)> {
-    figure.kind.values().into_iter().zip(value_grammars(kind, unit)).map(|(value, grammar)| (value, grammar(unit))).collect()
+    figure
+        .kind
+        .values()
+        .into_iter()
+        .zip(value_grammars(kind, unit))
+        .map(|(value, grammar)| (value, grammar(unit)))
+        .collect()
 }
 
 fn read_figures(reader: &mut Reader, unit: Unit) -> Result<Vec<Figure>, Damaged> {
