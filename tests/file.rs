@@ -224,11 +224,12 @@ fn wrong_types_are_told_with_what_was_expected() {
 
 #[test]
 fn numbers_are_texts_or_whole() {
-    let inexact = "a JSON number that is not a small whole number is not exact; write it as a text, such as \"10.5\"";
-    for number in ["10.5", "1e2", "0.1", "-0.5", "123456789012345678901234567890"] {
+    let inexact = "a JSON number with a fraction is not exact; write it as a text, such as \"10.5\"";
+    for number in ["10.5", "1e2", "0.1", "-0.5", "-0.0", "1234567890123456789012345678901234567890.0"] {
         assert_eq!(problems(&changed("\"y\": 0}", &format!("\"y\": {number}}}"))), [format!("joints[0].y: {inexact}")]);
     }
-    for number in ["0", "-7", "18446744073709551615", "-9223372036854775808"] {
+    let forty = "-1234567890123456789012345678901234567890";
+    for number in ["0", "-0", "-7", "18446744073709551615", "-9223372036854775808", forty] {
         let truss = read_truss(changed("\"y\": 0}", &format!("\"y\": {number}}}")).as_bytes()).expect("a whole number");
         assert_eq!(truss.joints[0].y.text, number);
     }
@@ -439,7 +440,7 @@ fn with_list(name: &str, count: usize, entry: impl Fn(usize) -> String) -> Strin
 fn each_limit_is_told_by_its_name() {
     for (name, limit) in [("joints", 50_000), ("members", 100_000), ("supports", 50_000), ("figures", 100_000)] {
         let text = with_list(name, limit + 1, |_| "0".into());
-        assert_eq!(problems(&text), [format!("{name}: {} {name}: more than the limit of {limit}", limit + 1)]);
+        assert_eq!(problems(&text), [format!("{name}: more than the limit of {limit} {name}")]);
         let error = read_truss(with_list(name, limit, |_| "0".into()).as_bytes()).expect_err("numbers are no entries");
         assert_eq!(error.problems[0], format!("{name}[0]: expected an object, found a number"));
     }

@@ -243,3 +243,12 @@ fn a_link_to_a_truss_that_is_unfit_says_why() {
     let error = from_link(&link).expect_err("a mark that stands twice");
     assert_eq!(error, LinkError::Unfit("joint mark `L0` is used twice; expected each mark once".into()));
 }
+
+#[test]
+fn nothing_may_stand_behind_the_deflated_content_even_under_a_right_check() {
+    let content = content_of(&to_link(&small("in")).expect("short enough"));
+    let mut deflated = miniz_oxide::deflate::compress_to_vec(&content, 10);
+    assert_eq!(from_link(&sealed(1, &deflated)), Ok(small("in")));
+    deflated.push(0);
+    assert_eq!(from_link(&sealed(1, &deflated)), Err(LinkError::Damaged));
+}

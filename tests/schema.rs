@@ -9,7 +9,7 @@ mod common;
 use chordwright::exchange::{read_truss, truss_schema, write_truss};
 use common::trusses;
 use proptest::prelude::*;
-use serde_json::{Value, json};
+use serde_json::{Map, Value, json};
 use std::path::PathBuf;
 
 fn project(file: &str) -> PathBuf {
@@ -36,7 +36,7 @@ impl Judge {
         schema.iter().all(|(keyword, wanted)| self.keyword(keyword, wanted, schema, value))
     }
 
-    fn keyword(&self, keyword: &str, wanted: &Value, schema: &serde_json::Map<String, Value>, value: &Value) -> bool {
+    fn keyword(&self, keyword: &str, wanted: &Value, schema: &Map<String, Value>, value: &Value) -> bool {
         let size = |count: Option<usize>| count.is_none_or(|count| compare(keyword, count as u64, wanted));
         match keyword {
             "$schema" | "$defs" | "title" | "description" => true,
@@ -155,5 +155,97 @@ fn it_refuses_what_the_reader_refuses() {
         assert_ne!(changed, sheet, "`{from}` stands in the sheet");
         assert!(read_truss(changed.as_bytes()).is_err(), "the reader takes `{to}`");
         assert!(!satisfied(&changed), "the schema takes `{to}`");
+    }
+}
+
+fn truss_with(list: &str, entry: &Value) -> Value {
+    let joints = json!([
+        {"mark": "A", "x": "0", "y": "0"}, {"mark": "B", "x": "4'", "y": "0"},
+        {"mark": "C", "x": "4'", "y": "3'"}, {"mark": "D", "x": "0", "y": "3'"},
+    ]);
+    let mut truss = json!({"chordwright": 1, "title": "", "unit": "in", "step": "1/16", "joints": joints});
+    match list {
+        "" => truss = entry.clone(),
+        "joints" => truss["joints"] = json!([entry]),
+        _ => truss[list] = json!([entry]),
+    }
+    truss
+}
+
+/// Entries with every key that they may have.
+fn full_entries() -> Vec<(&'static str, Value)> {
+    let mut entries = vec![
+        (
+            "",
+            json!({"chordwright": 1, "title": "T", "unit": "mm", "step": 1, "joints": [], "members": [], "supports": [], "figures": []}),
+        ),
+        ("joints", json!({"mark": "A", "x": "0", "y": 0, "loose": true})),
+        ("members", json!({"mark": "W1", "from": "A", "to": "B", "role": "web"})),
+        ("supports", json!({"kind": "pin", "joint": "A"})),
+        ("supports", json!({"kind": "roller", "joint": "A", "normal": ["0", 1]})),
+    ];
+    for (kind, value) in [("length", "1'"), ("run", "-1'"), ("rise", "1'"), ("pitch", "6:12")] {
+        entries
+            .push(("figures", json!({"id": "f", "kind": kind, "from": "A", "to": "B", "value": value, "step": "0"})));
+    }
+    for (kind, value) in [("angle", "26.6"), ("spread", "1/5")] {
+        entries.push((
+            "figures",
+            json!({"id": "f", "kind": kind, "at": "A", "from": "B", "to": "C", "value": value, "step": "0"}),
+        ));
+    }
+    entries.push(("figures", json!({"id": "f", "kind": "square", "at": "A", "from": "B", "to": "D", "step": "0"})));
+    for kind in ["in line", "level", "plumb"] {
+        entries.push(("figures", json!({"id": "f", "kind": kind, "joints": ["A", "B", "C"], "step": "0"})));
+    }
+    for kind in ["parallel", "equal"] {
+        let figure = json!({"id": "f", "kind": kind, "first": ["A", "B"], "second": ["C", "D"], "step": "0"});
+        entries.push(("figures", figure));
+    }
+    entries
+}
+
+/// What the schema says of an entry: its keys and those that it needs.
+fn described<'s>(schema: &'s Value, list: &str, entry: &Value) -> &'s Map<String, Value> {
+    let definition = match list {
+        "" => schema,
+        "joints" => &schema["$defs"]["Joint"],
+        "members" => &schema["$defs"]["Member"],
+        kinds => {
+            let name = if kinds == "supports" { "Support" } else { "Figure" };
+            let kinds = schema["$defs"][name]["oneOf"].as_array().expect("one of several kinds");
+            let fits = |kind: &&Value| kind["properties"]["kind"]["const"] == entry["kind"];
+            kinds.iter().find(fits).unwrap_or_else(|| panic!("the schema has no kind {}", entry["kind"]))
+        }
+    };
+    definition.as_object().expect("an object")
+}
+
+fn reads(truss: &Value) -> Result<(), String> {
+    read_truss(truss.to_string().as_bytes()).map(drop).map_err(|error| error.to_string())
+}
+
+#[test]
+fn reader_and_schema_take_the_same_keys() {
+    let schema = truss_schema();
+    for (list, entry) in full_entries() {
+        let described = described(&schema, list, &entry);
+        assert_eq!(described["additionalProperties"], json!(false), "{entry}");
+        let mut known: Vec<&String> = described["properties"].as_object().expect("keys").keys().collect();
+        let mut used: Vec<&String> = entry.as_object().expect("keys").keys().collect();
+        known.sort();
+        used.sort();
+        assert_eq!(known, used, "{entry}");
+        assert_eq!(reads(&truss_with(list, &entry)), Ok(()), "{entry}");
+        for key in used {
+            let mut without = entry.clone();
+            without.as_object_mut().expect("keys").remove(key);
+            let needed = described["required"].as_array().expect("a list").contains(&json!(key));
+            assert_eq!(reads(&truss_with(list, &without)).is_err(), needed, "{entry} without {key}");
+        }
+        let mut more = entry.clone();
+        more["surprise"] = json!("1");
+        let refused = reads(&truss_with(list, &more)).expect_err("an unknown key");
+        assert!(refused.contains("surprise"), "{refused}");
     }
 }

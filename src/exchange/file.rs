@@ -1,6 +1,6 @@
 //! Reading a truss file: everything that is wrong is told, with where it is and what was expected.
 
-use super::json::Node;
+use super::json::{Node, TOO_DEEP, TOO_MANY_KEYS, parse};
 use crate::measure::{Unit, ValueError, Written, parse_degrees, parse_length, parse_pitch, parse_plain};
 use crate::truss::{
     Figure, FigureKind, Joint, JointId, Limit, Member, Role, Support, SupportKind, Truss, mark_problem,
@@ -56,7 +56,7 @@ pub fn read_truss(bytes: &[u8]) -> Result<Truss, ReadError> {
     let text = std::str::from_utf8(bytes)
         .map_err(|error| ReadError::one(format!("byte {}: not UTF-8 text", error.valid_up_to() + 1)))?;
     let text = text.strip_prefix('\u{feff}').unwrap_or(text);
-    let node: Node = serde_json::from_str(text).map_err(|error| ReadError::one(json_words(&error)))?;
+    let node = parse(text).map_err(|error| ReadError::one(json_words(&error)))?;
     let mut reader = Reader::default();
     let truss = reader.truss(&node);
     match truss.filter(|_| reader.problems.is_empty()) {
@@ -75,7 +75,7 @@ fn json_words(error: &serde_json::Error) -> String {
     let words = words.split(" at line ").next().unwrap_or_default();
     match error.classify() {
         serde_json::error::Category::Eof => format!("{at}: the text ends too early"),
-        _ if words.contains("recursion limit") => format!("{at}: nested too deeply for a truss file"),
+        _ if words == TOO_DEEP || words == TOO_MANY_KEYS => format!("{at}: {words}"),
         _ => format!("{at}: not JSON: {words}"),
     }
 }
@@ -175,7 +175,7 @@ impl Reader {
         match keys.take(key) {
             None => Some(&[]),
             Some(Node::List(items)) if items.len() > limit => {
-                self.wrong(key, format!("{} {key}: more than the limit of {limit}", items.len()))
+                self.wrong(key, format!("more than the limit of {limit} {key}"))
             }
             Some(Node::List(items)) => Some(items),
             Some(other) => self.wrong(key, format!("expected a list, found {}", other.words())),
@@ -197,7 +197,7 @@ impl Reader {
         let figures = self.list(&mut keys, "figures", Limit::FIGURES)?;
         self.no_more(keys);
         let joints = self.each(joints, "joints", Reader::joint);
-        self.marks = joints.iter().enumerate().rev().map(|(i, joint)| (joint.mark.clone(), JointId::new(i))).collect();
+        self.name_joints(&joints);
         Some(Truss {
             title: title?.to_string(),
             unit: self.unit,
@@ -209,13 +209,25 @@ impl Reader {
         })
     }
 
+    /// Remembers which joint has which mark. A mark that is used twice is told here, before anything that names it.
+    fn name_joints(&mut self, joints: &[Joint]) {
+        for (index, joint) in joints.iter().enumerate() {
+            if self.marks.insert(joint.mark.clone(), JointId::new(index)).is_some() {
+                let text = format!("joint mark {} is used twice; expected each mark once", quoted(&joint.mark));
+                self.wrong::<()>("", text);
+            }
+        }
+    }
+
     fn version(&mut self, keys: &mut Keys) -> Option<()> {
         match self.need(keys, "chordwright")? {
-            Node::Whole(version) if version == VERSION => Some(()),
-            Node::Text(version) if version == VERSION => Some(()),
-            Node::Whole(version) | Node::Text(version) => {
-                self.wrong("chordwright", format!("version {} is not known here; expected {VERSION}", quoted(version)))
-            }
+            node @ (Node::Whole(_) | Node::Text(_)) => match node.written() {
+                version if version == VERSION => Some(()),
+                version => {
+                    let text = format!("version {} is not known here; expected {VERSION}", quoted(&version));
+                    self.wrong("chordwright", text)
+                }
+            },
             other => self.wrong("chordwright", format!("expected {VERSION}, found {}", other.words())),
         }
     }
@@ -244,21 +256,19 @@ impl Reader {
         parse: impl Fn(&str) -> Result<Written, ValueError>,
     ) -> Option<Written> {
         let text = match node {
-            Node::Text(text) | Node::Whole(text) => text,
+            Node::Text(_) | Node::Whole(_) => node.written(),
             Node::Fraction => {
-                return self.wrong(
-                    place,
-                    "a JSON number that is not a small whole number is not exact; write it as a text, such as \"10.5\"",
-                );
+                return self
+                    .wrong(place, "a JSON number with a fraction is not exact; write it as a text, such as \"10.5\"");
             }
             other => {
                 return self
                     .wrong(place, format!("expected a value such as \"8'-3 3/8\\\"\", found {}", other.words()));
             }
         };
-        match parse(text) {
+        match parse(&text) {
             Ok(written) => Some(written),
-            Err(error) => self.wrong(place, format!("{error} (in {})", quoted(text))),
+            Err(error) => self.wrong(place, format!("{error} (in {})", quoted(&text))),
         }
     }
 

@@ -1,7 +1,7 @@
 //! A short mark by which two people know that they speak of the same truss.
 
 use crate::exact::Rational;
-use crate::truss::{FigureKind, SupportKind, Truss};
+use crate::truss::{SupportKind, Truss};
 use sha2::{Digest, Sha256};
 
 /// The fingerprint of a truss: the first 16 hexadecimal digits of the SHA-256 of what it says (values, not the way they were
@@ -27,27 +27,15 @@ pub fn fingerprint(truss: &Truss) -> String {
     content.text("figures");
     for figure in &truss.figures {
         content.text(&figure.mark).text(figure.kind.name());
-        for id in figure.kind.joints() {
-            content.number(id.0);
+        for joint in figure.kind.joints() {
+            content.number(joint.0);
         }
-        for value in figure_values(&figure.kind) {
-            content.value(value);
+        for written in figure.kind.values() {
+            content.value(&written.value);
         }
         content.text(&figure.step.as_ref().map(|step| step.value.to_string()).unwrap_or_default());
     }
     content.0.finalize().iter().take(8).map(|byte| format!("{byte:02x}")).collect()
-}
-
-fn figure_values(kind: &FigureKind) -> Vec<&Rational> {
-    match kind {
-        FigureKind::Length { value, .. }
-        | FigureKind::Run { value, .. }
-        | FigureKind::Rise { value, .. }
-        | FigureKind::Angle { value, .. }
-        | FigureKind::Spread { value, .. } => vec![&value.value],
-        FigureKind::Pitch { rise, run, .. } => vec![&rise.value, &run.value],
-        _ => Vec::new(),
-    }
 }
 
 /// Content being hashed: every part with its length before it, so that no two contents read alike.

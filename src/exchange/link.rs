@@ -15,7 +15,8 @@ use crate::measure::{Sheet, Unit, Written, parse_degrees, parse_length, parse_pl
 use crate::truss::{Figure, FigureKind, Joint, JointId, Limit, Member, Role, Support, SupportKind, Truss};
 use base64::{Engine, engine::general_purpose::URL_SAFE_NO_PAD};
 use miniz_oxide::deflate::compress_to_vec;
-use miniz_oxide::inflate::decompress_to_vec_with_limit;
+use miniz_oxide::inflate::TINFLStatus;
+use miniz_oxide::inflate::core::{DecompressorOxide, decompress, inflate_flags};
 use num_bigint::BigInt;
 use num_integer::Integer;
 use num_traits::{One, ToPrimitive};
@@ -97,7 +98,7 @@ pub fn from_link(link: &str) -> Result<Truss, LinkError> {
     }
     let content = match packed.split_first() {
         Some((0, bytes)) => bytes.to_vec(),
-        Some((1, bytes)) => decompress_to_vec_with_limit(bytes, MAX_BYTES).map_err(|_| LinkError::Damaged)?,
+        Some((1, bytes)) => inflated(bytes)?,
         _ => return Err(LinkError::Damaged),
     };
     let mut reader = Reader::new(&content);
@@ -109,6 +110,18 @@ pub fn from_link(link: &str) -> Result<Truss, LinkError> {
         None => Ok(truss),
         Some(problem) => Err(LinkError::Unfit(problem.text)),
     }
+}
+
+/// The content of a deflated link: bounded, and with nothing behind its end.
+fn inflated(bytes: &[u8]) -> Result<Vec<u8>, Damaged> {
+    let mut content = vec![0; MAX_BYTES];
+    let flags = inflate_flags::TINFL_FLAG_USING_NON_WRAPPING_OUTPUT_BUF;
+    let (status, consumed, length) = decompress(&mut DecompressorOxide::new(), bytes, &mut content, 0, flags);
+    if status != TINFLStatus::Done || consumed != bytes.len() {
+        return Err(Damaged);
+    }
+    content.truncate(length);
+    Ok(content)
 }
 
 /// How a value is read, and so how it is usually written.
@@ -178,6 +191,9 @@ fn read_values(reader: &mut Reader, grammars: &[Grammar]) -> Result<Vec<Written>
             form => {
                 let value = numbers.next().ok_or(Damaged)?;
                 let text = grammar.usual(&value).into_iter().nth(form as usize).ok_or(Damaged)?;
+                if grammar.parse(&text).as_ref() != Some(&value) {
+                    return Err(Damaged);
+                }
                 Written { text, value }
             }
         });
@@ -441,16 +457,13 @@ fn write_figures(writer: &mut Writer, truss: &Truss) {
 }
 
 fn values_of(figure: &Figure, kind: u64, unit: Unit) -> Vec<(&Written, Grammar)> {
-    let values: Vec<&Written> = match &figure.kind {
-        FigureKind::Length { value, .. }
-        | FigureKind::Run { value, .. }
-        | FigureKind::Rise { value, .. }
-        | FigureKind::Angle { value, .. }
-        | FigureKind::Spread { value, .. } => vec![value],
-        FigureKind::Pitch { rise, run, .. } => vec![rise, run],
-        _ => Vec::new(),
-    };
-    values.into_iter().zip(value_grammars(kind, unit)).map(|(value, grammar)| (value, grammar(unit))).collect()
+    figure
+        .kind
+        .values()
+        .into_iter()
+        .zip(value_grammars(kind, unit))
+        .map(|(value, grammar)| (value, grammar(unit)))
+        .collect()
 }
 
 fn read_figures(reader: &mut Reader, unit: Unit) -> Result<Vec<Figure>, Damaged> {

@@ -10,6 +10,7 @@ mod value;
 mod written;
 
 pub use print::{Printed, Sheet, decimal, pretty};
+pub use token::visible;
 pub use unit::Unit;
 pub use value::{
     MAX_CHARACTERS, MAX_DEPTH, MAX_DIGITS, ValueError, parse_degrees, parse_length, parse_pitch, parse_plain,

@@ -240,5 +240,11 @@ fn check_digits(start: usize, count: usize) -> Result<(), ValueError> {
 
 fn unknown(start: usize, text: &str) -> ValueError {
     let expected = "expected a number, a mark (' or \"), a unit (in, ft, mm, cm, m) or + - * / ( )";
-    ValueError::new(start + 1, format!("{expected}, found `{}`", text.escape_debug()))
+    ValueError::new(start + 1, format!("{expected}, found `{}`", visible(text)))
+}
+
+/// A text with what cannot be seen in it spelt out, for messages.
+pub fn visible(text: &str) -> String {
+    let spell = |c: char| if c.is_control() { c.escape_default().collect() } else { String::from(c) };
+    text.chars().map(spell).collect()
 }

@@ -91,7 +91,8 @@ impl Truss {
     pub fn edited(&self, edit: &Edit) -> Result<Truss, EditError> {
         let mut truss = self.clone();
         truss.apply(edit)?;
-        Ok(truss)
+        // What cannot be written and read again would be lost when it is saved.
+        truss.too_long().map_or(Ok(truss), |text| Err(EditError(text)))
     }
 
     fn apply(&mut self, edit: &Edit) -> Result<(), EditError> {
@@ -335,4 +336,25 @@ fn check_mark(mark: &str, what: &str, taken: bool) -> Result<(), EditError> {
 
 fn missing(what: &str) -> EditError {
     EditError(format!("that {what} is not there any more"))
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::exact::Rational;
+
+    #[test]
+    fn values_too_long_to_be_saved_are_refused() {
+        let digits: Rational = crate::exact::parse_fraction(&"9".repeat(40)).expect("a number");
+        let mut truss = Truss { unit: Unit::M, ..Truss::default() };
+        let joint = |x: &Rational| {
+            let x = Written::plain(x.clone());
+            Joint { mark: "A".into(), y: x.clone(), x, loose: false }
+        };
+        truss = truss.edited(&Edit::AddJoint(joint(&digits))).expect("forty digits");
+        let error = truss.edited(&Edit::Unit(Unit::Mm)).expect_err("forty-three digits");
+        assert_eq!(error.0, "a coordinate of joint `A` has more than the limit of 40 digits");
+        let far = Point { x: &digits * &digits, y: digits };
+        assert!(truss.edited(&Edit::MoveJoints(vec![(JointId(0), far)])).is_err());
+    }
 }

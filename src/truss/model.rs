@@ -335,6 +335,19 @@ impl FigureKind {
         }
     }
 
+    /// The values that are printed: none, one, or rise and run of a pitch.
+    pub fn values(&self) -> Vec<&Written> {
+        match self {
+            FigureKind::Length { value, .. }
+            | FigureKind::Run { value, .. }
+            | FigureKind::Rise { value, .. }
+            | FigureKind::Angle { value, .. }
+            | FigureKind::Spread { value, .. } => vec![value],
+            FigureKind::Pitch { rise, run, .. } => vec![rise, run],
+            _ => Vec::new(),
+        }
+    }
+
     /// The joints it is about, in the order they are written.
     pub fn joints(&self) -> Vec<JointId> {
         match self {

@@ -3,6 +3,7 @@
 use super::ids::{FigureId, JointId, MemberId, SupportId};
 use super::model::{FigureKind, SupportKind, Truss};
 use crate::exact::{Rational, whole};
+use crate::measure::{Written, visible, within_digits};
 use num_traits::{One, Signed, Zero};
 use std::collections::HashSet;
 use thiserror::Error;
@@ -61,6 +62,7 @@ impl Truss {
         self.check_members(&mut found);
         self.check_supports(&mut found);
         self.check_figures(&mut found);
+        self.check_digits(&mut found);
         found
     }
 
@@ -126,6 +128,50 @@ impl Truss {
         }
     }
 
+    /// Values that are too long to be written and read again.
+    fn check_digits(&self, found: &mut Vec<Problem>) {
+        for (place, written) in self.values() {
+            if !within_digits(&written.value) {
+                let what = match &place {
+                    Place::Sheet => "the step".to_owned(),
+                    Place::Joint(id) => format!("a coordinate of joint `{}`", self.mark(*id)),
+                    Place::Figure(id) => format!("a value of figure `{}`", self.figure(*id).mark),
+                    Place::Member(_) | Place::Support(_) => "the normal of a roller".to_owned(),
+                };
+                found.push(Problem {
+                    place,
+                    text: format!("{what} has more than the limit of {} digits", Limit::DIGITS),
+                });
+            }
+        }
+    }
+
+    /// Every value that is written on the sheet, with where it is.
+    fn values(&self) -> impl Iterator<Item = (Place, &Written)> {
+        let numbered = |id: usize| Place::Joint(JointId::new(id));
+        let joints = self.joints.iter().enumerate();
+        let joints = joints.flat_map(move |(id, joint)| [(numbered(id), &joint.x), (numbered(id), &joint.y)]);
+        let supports = self.supports.iter().enumerate().flat_map(|(id, support)| {
+            let parts: &[Written] = if let SupportKind::Roller { normal } = &support.kind { normal } else { &[] };
+            parts.iter().map(move |part| (Place::Support(SupportId::new(id)), part))
+        });
+        let figures = self.figures.iter().enumerate().flat_map(|(id, figure)| {
+            let place = move || Place::Figure(FigureId::new(id));
+            figure.kind.values().into_iter().chain(&figure.step).map(move |written| (place(), written))
+        });
+        std::iter::once((Place::Sheet, &self.step)).chain(joints).chain(supports).chain(figures)
+    }
+
+    /// The first value that is too long to be written and read again, in words.
+    pub(super) fn too_long(&self) -> Option<String> {
+        if self.values().all(|(_, written)| within_digits(&written.value)) {
+            return None;
+        }
+        let mut found = Vec::new();
+        self.check_digits(&mut found);
+        found.into_iter().next().map(|problem| problem.text)
+    }
+
     /// What is wrong with one figure, if anything.
     pub fn figure_problem(&self, kind: &FigureKind, step: Option<&Rational>) -> Option<String> {
         if kind.joints().iter().any(|joint| joint.index() >= self.joints.len()) {
@@ -140,7 +186,7 @@ impl Truss {
 
 fn check_mark<'a>(mark: &'a str, what: &str, place: Place, seen: &mut HashSet<&'a str>, found: &mut Vec<Problem>) {
     if let Some(text) = mark_problem(mark) {
-        found.push(Problem { place, text: format!("{what} mark `{}` {text}", mark.escape_debug()) });
+        found.push(Problem { place, text: format!("{what} mark `{}` {text}", visible(mark)) });
     } else if !seen.insert(mark) {
         found.push(Problem { place, text: format!("{what} mark `{mark}` is used twice; expected each mark once") });
     }
