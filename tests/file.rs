@@ -547,3 +547,13 @@ fn a_file_that_was_cut_off_anywhere_is_refused() {
         assert!(read_truss(&text.as_bytes()[..whole]).is_ok(), "only the end of the last line is missing");
     }
 }
+
+#[test]
+fn a_value_from_elsewhere_reads_as_the_file_does() {
+    let text = include_str!("../demo/mill-footbridge.truss.json");
+    let value: serde_json::Value = serde_json::from_str(text).expect("JSON");
+    assert_eq!(chordwright::exchange::read_truss_value(&value), read_truss(text.as_bytes()));
+    let wrong = serde_json::json!({ "chordwright": 1, "unit": "in", "step": 0.5 });
+    let error = chordwright::exchange::read_truss_value(&wrong).expect_err("a fraction").to_string();
+    assert!(error.contains("step") && error.contains("not exact"), "{error}");
+}

@@ -1,10 +1,11 @@
 //! Reading a truss file: everything that is wrong is told, with where it is and what was expected.
 
-use super::json::{Node, TOO_DEEP, TOO_MANY_KEYS, parse};
+use super::json::{Node, TOO_DEEP, TOO_MANY_KEYS, parse, read};
 use crate::measure::{Unit, ValueError, Written, parse_degrees, parse_length, parse_pitch, parse_plain};
 use crate::truss::{
     Figure, FigureKind, Joint, JointId, Limit, Member, Role, Support, SupportKind, Truss, mark_problem,
 };
+use serde::Deserializer;
 use std::collections::{HashMap, HashSet};
 use std::fmt;
 
@@ -56,9 +57,22 @@ pub fn read_truss(bytes: &[u8]) -> Result<Truss, ReadError> {
     let text = std::str::from_utf8(bytes)
         .map_err(|error| ReadError::one(format!("byte {}: not UTF-8 text", error.valid_up_to() + 1)))?;
     let text = text.strip_prefix('\u{feff}').unwrap_or(text);
-    let node = parse(text).map_err(|error| ReadError::one(json_words(&error)))?;
+    truss_of(&parse(text).map_err(|error| ReadError::one(json_words(&error)))?)
+}
+
+/// Reads a truss from a value in the form of the truss file, from any source that describes itself (a JavaScript value,
+/// say).
+///
+/// # Errors
+///
+/// As [`read_truss`]; and when the source cannot be read as such a value.
+pub fn read_truss_value<'de, D: Deserializer<'de>>(source: D) -> Result<Truss, ReadError> {
+    truss_of(&read(source).map_err(|error| ReadError::one(error.to_string()))?)
+}
+
+fn truss_of(node: &Node) -> Result<Truss, ReadError> {
     let mut reader = Reader::default();
-    let truss = reader.truss(&node);
+    let truss = reader.truss(node);
     match truss.filter(|_| reader.problems.is_empty()) {
         Some(truss) => match truss.problems() {
             problems if problems.is_empty() => Ok(truss),

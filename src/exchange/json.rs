@@ -72,6 +72,15 @@ pub(super) fn parse(text: &str) -> Result<Node, serde_json::Error> {
     Ok(node)
 }
 
+/// Reads a value from any source that describes itself.
+///
+/// # Errors
+///
+/// When the source does.
+pub(super) fn read<'de, D: Deserializer<'de>>(source: D) -> Result<Node, D::Error> {
+    At(0).deserialize(source)
+}
+
 /// The text with quotation marks around whole numbers that are too long for a number of the machine, which would be made
 /// floating otherwise.
 fn with_long_numbers_quoted(text: &str) -> Cow<'_, str> {

@@ -13,7 +13,7 @@ mod words;
 mod write;
 
 pub use document::{ReportDocument, report_document, report_json};
-pub use file::{ReadError, read_truss};
+pub use file::{ReadError, read_truss, read_truss_value};
 pub use fingerprint::fingerprint;
 pub use headless::{Outcome, REPORT_HELP, run_report};
 pub use link::{LinkError, MAX_LINK_CHARACTERS, from_link, to_link};

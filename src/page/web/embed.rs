@@ -1,8 +1,8 @@
 //! The JavaScript interface: for documents that embed the checks without the page.
 
 use crate::checks;
-use crate::exchange::{read_truss, report_json};
-use js_sys::JSON;
+use crate::exchange::{read_truss_value, report_document};
+use serde::Serialize;
 use wasm_bindgen::prelude::*;
 
 /// Checks a truss given as a plain JavaScript value in the form of the truss file, and gives the report back as a plain
@@ -19,9 +19,8 @@ use wasm_bindgen::prelude::*;
 /// Throws an `Error` whose message says where the truss is malformed and what was expected.
 #[wasm_bindgen]
 pub fn report(truss: JsValue) -> Result<JsValue, JsError> {
-    let text = JSON::stringify(&truss).ok().and_then(|text| text.as_string());
-    let text = text.ok_or_else(|| JsError::new("the truss is not a plain value"))?;
-    let read = read_truss(text.as_bytes()).map_err(|error| JsError::new(&error.to_string()))?;
+    let read = read_truss_value(serde_wasm_bindgen::Deserializer::from(truss))?;
     let answers = checks::report(&read, &Default::default());
-    JSON::parse(&report_json("", &read, &answers)).map_err(|_| JsError::new("the report cannot be given as a value"))
+    let document = report_document("", &read, &answers);
+    Ok(document.serialize(&serde_wasm_bindgen::Serializer::json_compatible())?)
 }
