@@ -84,7 +84,7 @@ fn tight_spread(frame: &Frame, gap: &Gap, rule: Rule, level: Level) -> Finding {
         frame.print.member(first),
         frame.print.member(second),
         frame.print.joint(at),
-        frame.print.degrees(&v, &w),
+        frame.print.degrees_at(&frame.lattice, at, a, b),
         frame.limits.tight_spread,
     );
     let formula = format!("({})² / ({} × {}) = {spread}", v.cross(&w), v.quadrance(), w.quadrance());
