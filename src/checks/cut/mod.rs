@@ -50,7 +50,7 @@ fn too_long(frame: &Frame, members: &[super::MemberRow]) -> Vec<Finding> {
     for (member, row) in members.iter().enumerate().filter(|(_, row)| row.quadrance > square) {
         tally.add(|rule, level| {
             let mark = frame.print.member(member);
-            let text = format!("{mark} is {} long, more than {}.", row.length, frame.print.length(&limit));
+            let text = format!("{mark} is {} long, more than {}", row.length, frame.print.length(&limit));
             Finding::new(rule, level, text)
                 .members(member_ids([member]))
                 .value(format!("quadrance of {mark}"), frame.print.area(&row.quadrance))

@@ -31,7 +31,7 @@ fn rounding(frame: &Frame, chain: &Chain, sum: &Rational, overall: &Rational, ru
     let [first, last] = chain.ends();
     let (printed, whole) = (frame.print.length(sum), frame.print.length(overall));
     let text = format!(
-        "The printed lengths of {} add up to {printed}, {} {} than {whole} from {} to {}.",
+        "the printed lengths of {} add up to {printed}, {} {} than {whole} from {} to {}",
         chain.name(frame),
         frame.print.length(&short.abs()),
         if short.is_positive() { "less" } else { "more" },
