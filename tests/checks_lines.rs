@@ -2,7 +2,7 @@
 
 mod trusses;
 
-use chordwright::checks::{Level, Question, Report, Rule, TrueState};
+use chordwright::checks::{Level, Places, Question, Report, Rule, TrueState};
 use chordwright::exact::{Rational, ratio, whole};
 use chordwright::measure::Written;
 use chordwright::truss::{Edit, FigureKind, JointId, Role, Truss};
@@ -169,4 +169,21 @@ fn a_sketched_joint_says_nothing() {
     let mut truss = with_moved(6, whole(0), ratio(-1, 8));
     truss.joints[6].loose = true;
     assert_eq!(near_findings(&usual(&truss)), []);
+}
+
+#[test]
+fn at_a_layout_less_than_a_step_means_nothing() {
+    let mut truss = frame(&[(0, 0), (60, 1), (120, 0), (60, 40)], &[(0, 1), (1, 2), (0, 3), (3, 2), (1, 3)]);
+    truss.joints[1].loose = true;
+    let length = |from, to, inches: i64| FigureKind::Length {
+        from: JointId(from),
+        to: JointId(to),
+        value: Written::plain(whole(inches)),
+    };
+    for kind in [length(0, 1, 60), length(1, 2, 60), length(1, 3, 40), FigureKind::InLine { joints: ids([0, 1, 2]) }] {
+        truss = figured(truss, kind);
+    }
+    let report = usual(&truss);
+    assert_eq!(report.places, Places::Layout, "{:?}", report.answers.close);
+    assert_eq!(near_findings(&report), []);
 }

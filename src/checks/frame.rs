@@ -208,10 +208,10 @@ impl Tally {
         let told = found.len();
         let name = self.rule.name();
         if self.open {
-            let text = format!("There are more findings of `{name}`: the search stopped after the first {told}.");
+            let text = format!("there are more findings of `{name}`: the search stopped after the first {told}");
             found.push(Finding::new(self.rule, self.level, text));
         } else if self.more > 0 {
-            let text = format!("{} more findings of `{name}`; the first {told} are listed.", self.more);
+            let text = format!("{} more findings of `{name}`; the first {told} are listed", self.more);
             found.push(Finding::new(self.rule, self.level, text));
         }
         found

@@ -1,10 +1,11 @@
 //! How the checks write lengths, slopes and lists of marks.
 
-use crate::exact::{Point, Rational, Vector, whole};
+use crate::exact::{Lattice, Point, Rational, Vector, hundredths_of, hundredths_of_large, whole};
 use crate::measure::Sheet;
 use crate::truss::{JointId, MemberId, Truss};
 use num_bigint::BigInt;
 use num_integer::Integer;
+use num_traits::Signed;
 
 /// Prints for one sheet.
 #[derive(Clone, Debug)]
@@ -19,8 +20,8 @@ const LISTED: usize = 12;
 /// A root to the nearest step, and whether it is exact.
 #[derive(Clone, Debug)]
 pub(crate) struct Root {
-    /// The rounded length.
-    pub(crate) length: Rational,
+    /// The rounded length, in steps.
+    pub(crate) steps: BigInt,
     /// True when nothing was rounded.
     pub(crate) exact: bool,
 }
@@ -55,17 +56,51 @@ impl<'a> Print<'a> {
         let twice = (&above * 4u32).div_floor(&below).sqrt();
         let steps = (twice + 1u32).div_floor(&BigInt::from(2));
         let exact = &steps * &steps * below == above;
-        Root { length: self.step() * whole(steps), exact }
+        Root { steps, exact }
+    }
+
+    /// A length of so many steps.
+    pub(crate) fn of_steps(&self, steps: &BigInt) -> Rational {
+        self.step() * whole(steps.clone())
     }
 
     /// The root of a quadrance as a length in a sentence.
     pub(crate) fn root(&self, quadrance: &Rational) -> String {
-        self.length(&self.rounded_root(quadrance).length)
+        self.length(&self.of_steps(&self.rounded_root(quadrance).steps))
     }
 
     /// The angle from the direction `v` counter-clockwise to `w`, in degrees.
     pub(crate) fn degrees(&self, v: &Vector, w: &Vector) -> String {
         self.sheet.turn_degrees(v, w)
+    }
+
+    /// The same at a joint of a lattice; quick.
+    pub(crate) fn degrees_at(&self, lattice: &Lattice, at: usize, a: usize, b: usize) -> String {
+        let quick = || match [lattice.steps_along([at, a])?, lattice.steps_along([at, b])?].map(|d| d.map(i128::from)) {
+            [[vx, vy], [wx, wy]] => {
+                hundredths_of(i64::try_from(vx * wx + vy * wy).ok()?, i64::try_from(vx * wy - vy * wx).ok()?)
+            }
+        };
+        let large = || {
+            let [dot, cross] = lattice.corner(at, a, b);
+            hundredths_of_large(&dot, &cross)
+        };
+        match quick().or_else(large) {
+            Some(hundredths) => hundredths_text(hundredths),
+            None => self.degrees(&lattice.displacement([at, a]), &lattice.displacement([at, b])),
+        }
+    }
+
+    /// The slope of the line between two points of a lattice, from 0 to 90 degrees; empty when they coincide.
+    pub(crate) fn slope(&self, lattice: &Lattice, pair: [usize; 2]) -> String {
+        let [x, y] = lattice.direction(pair).parts().map(|part| part.abs());
+        match hundredths_of_large(&x, &y) {
+            Some(hundredths) => hundredths_text(hundredths),
+            None => {
+                let v = lattice.displacement(pair);
+                self.sheet.slope_degrees(&v.x, &v.y)
+            }
+        }
     }
 
     /// A place, exactly, in the sheet's unit.
@@ -97,6 +132,10 @@ impl<'a> Print<'a> {
     pub(crate) fn members(&self, members: impl IntoIterator<Item = usize>) -> String {
         listed(members.into_iter().map(|member| self.member(member)))
     }
+}
+
+fn hundredths_text(hundredths: u32) -> String {
+    format!("{}.{:02}", hundredths / 100, hundredths % 100)
 }
 
 /// `A`, `A and B`, `A, B and C`; a long list ends in a count.

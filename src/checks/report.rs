@@ -14,8 +14,8 @@ use crate::truss::{JointId, Truss};
 /// Asks the five questions of a truss.
 ///
 /// The geometric questions are asked of the layout where closing proved one, of the layout without the only suspect where
-/// there is one, of the joints as given otherwise. The truss is taken to have no [`Truss::problems`]; one that has them may be answered wrongly; one that names a joint that is not
-/// there gives an empty report instead of an error.
+/// there is one, of the joints as given otherwise. The truss is taken to have no [`Truss::problems`]; one that has them
+/// may be answered wrongly, and one that names a joint that is not there gets the report of an empty sheet.
 pub fn report(truss: &Truss, limits: &Limits) -> Report {
     if !is_whole(truss) {
         return report(&Truss::default(), limits);

@@ -258,6 +258,12 @@ impl<'a> Lattice<'a> {
         v.quadrance()
     }
 
+    /// The dot and cross product of the displacements from `at` to two other points, both times the same positive number.
+    pub fn corner(&self, at: usize, a: usize, b: usize) -> [BigInt; 2] {
+        let (v, w) = (self.unreduced([at, a]), self.unreduced([at, b]));
+        [v.dot(&w), v.cross(&w)]
+    }
+
     /// The displacement along a pair in whole lattice steps; `None` in the tier that has none. Equal steps are equal
     /// displacements.
     pub fn steps_along(&self, pair: [usize; 2]) -> Option<[i64; 2]> {

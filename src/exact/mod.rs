@@ -8,6 +8,7 @@
 //! This room knows nothing of trusses, units or trade notation, and holds no floating-point number.
 
 mod arc;
+mod hundredths;
 mod interval;
 mod lattice;
 mod laws;
@@ -19,6 +20,7 @@ mod rational;
 mod surd;
 
 pub use arc::{degrees_of, degrees_of_spread, nearest_degrees, nearest_degrees_of_spread, spread_of_degrees};
+pub use hundredths::{hundredths_of, hundredths_of_large};
 pub use interval::Interval;
 pub use lattice::{Direction, Lattice, Reach, Tier};
 pub use laws::{

@@ -80,11 +80,11 @@ fn tight_spread(frame: &Frame, gap: &Gap, rule: Rule, level: Level) -> Finding {
     let spread = frame.lattice.spread(at, a, b).unwrap_or_default();
     let (first, second) = (gap.first.member as usize, gap.second.member as usize);
     let text = format!(
-        "{} and {} leave {} at spread {spread} ({}°), less than {}.",
+        "{} and {} leave {} at spread {spread} ({}°), less than {}",
         frame.print.member(first),
         frame.print.member(second),
         frame.print.joint(at),
-        frame.print.degrees(&v, &w),
+        frame.print.degrees_at(&frame.lattice, at, a, b),
         frame.limits.tight_spread,
     );
     let formula = format!("({})² / ({} × {}) = {spread}", v.cross(&w), v.quadrance(), w.quadrance());
@@ -102,7 +102,7 @@ pub(crate) fn loose_ends(frame: &Frame) -> Vec<Finding> {
         if let [only] = frame.around(joint) {
             tally.add(|rule, level| {
                 let (mark, member) = (frame.print.joint(joint), frame.print.member(only.member as usize));
-                Finding::new(rule, level, format!("{mark} is a loose end: only {member} reaches it."))
+                Finding::new(rule, level, format!("{mark} is a loose end: only {member} reaches it"))
                     .joints(joint_ids([joint]))
                     .members(member_ids([only.member as usize]))
             });
@@ -148,7 +148,7 @@ pub(crate) fn apart_and_unused(frame: &Frame) -> Vec<Finding> {
         } else {
             let mark = frame.print.joint(joint);
             unused.add(|rule, level| {
-                Finding::new(rule, level, format!("No member reaches {mark}.")).joints(joint_ids([joint]))
+                Finding::new(rule, level, format!("no member reaches {mark}")).joints(joint_ids([joint]))
             });
         }
     }
@@ -169,12 +169,12 @@ fn apart(frame: &Frame, parts: &[usize], roots: &[usize], sizes: &[usize]) -> Ve
         tally.add(|rule, level| {
             let joints = &listed[part];
             let text = format!(
-                "{} {} not connected with the rest of the truss.",
+                "{} {} not connected with the rest of the truss",
                 frame.print.joints(joints.iter().copied()),
                 if sizes[part] == 1 { "is" } else { "are" }
             );
             Finding::new(rule, level, text).joints(joint_ids(joints.iter().copied())).words(format!(
-                "{} in this part, {} in the greatest.",
+                "{} in this part, {} in the greatest",
                 counted(sizes[part], "joint", "joints"),
                 sizes[main]
             ))

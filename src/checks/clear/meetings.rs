@@ -144,7 +144,7 @@ fn crossing(frame: &Frame, s: usize, t: usize, rule: Rule, level: Level) -> Find
     let (near, quadrance) = nearest_end(frame, &point, [a, b, c, d]);
     let (print, distance) = (&frame.print, frame.print.root(&quadrance));
     let (s_mark, t_mark) = (print.member(s), print.member(t));
-    let text = format!("{s_mark} crosses {t_mark} between joints, {distance} from {}.", print.joint(near));
+    let text = format!("{s_mark} crosses {t_mark} between joints, {distance} from {}", print.joint(near));
     let sides = format!(
         "{} and {} lie on different sides of {t_mark}: {} and {}; so do {} and {} of {s_mark}: {} and {}",
         print.joint(a),
@@ -162,7 +162,7 @@ fn crossing(frame: &Frame, s: usize, t: usize, rule: Rule, level: Level) -> Find
         .value(format!("quadrance from {}", print.joint(near)), print.area(&quadrance))
         .formula(Law::Orientation, sides)
         .mend(
-            "Put a joint where they cross, or let one of them pass behind the other.",
+            "Put a joint where they cross, or let one of them pass behind the other",
             Some(joined(frame, s, t, &point)),
         )
         .point(point)
@@ -202,7 +202,7 @@ fn overlap(frame: &Frame, s: usize, t: usize, rule: Rule, level: Level) -> Findi
     let shared = frame.lattice.displacement([later, sooner]).quadrance();
     let print = &frame.print;
     let text = format!(
-        "{} and {} lie on one line and share {} of it, from {} to {}.",
+        "{} and {} lie on one line and share {} of it, from {} to {}",
         print.member(s),
         print.member(t),
         print.root(&shared),
@@ -231,7 +231,7 @@ fn joint_on_member(frame: &Frame, joint: usize, member: usize, rule: Rule, level
     let near = if from_a.quadrance() <= from_b.quadrance() { a } else { b };
     let quadrance = from_a.quadrance().min(from_b.quadrance());
     let text = format!(
-        "{} stands on {}, {} from {}, and is not part of it.",
+        "{} stands on {}, {} from {}, and is not part of it",
         print.joint(joint),
         print.member(member),
         print.root(&quadrance),
@@ -244,10 +244,7 @@ fn joint_on_member(frame: &Frame, joint: usize, member: usize, rule: Rule, level
         .joints(joint_ids([joint]))
         .members(member_ids([member]))
         .formula(Law::TripleQuad, line)
-        .mend(
-            format!("Divide {} at {}.", print.member(member), print.joint(joint)),
-            Some(divided(frame, joint, member)),
-        )
+        .mend(format!("Divide {} at {}", print.member(member), print.joint(joint)), Some(divided(frame, joint, member)))
 }
 
 /// The edit that ends a member at a joint and goes on with a new one.

@@ -57,7 +57,7 @@ fn near_joints(frame: &Frame, tally: &mut Tally, left: &mut usize) {
 fn two_joints(frame: &Frame, a: usize, b: usize, quadrance: &Rational, rule: Rule, level: Level) -> Finding {
     let v = frame.lattice.displacement([a, b]);
     let text = format!(
-        "{} and {} stand only {} apart.",
+        "{} and {} stand only {} apart",
         frame.print.joint(a),
         frame.print.joint(b),
         frame.print.root(quadrance)
@@ -132,7 +132,7 @@ fn joint_and_member(
     let [a, b] = frame.ends[member];
     let (v, w) = (frame.lattice.displacement([a, b]), frame.lattice.displacement([a, joint]));
     let (mark, member_mark) = (frame.print.joint(joint), frame.print.member(member));
-    let text = format!("{mark} stands {} beside {member_mark}: it almost touches.", frame.print.root(square));
+    let text = format!("{mark} stands {} beside {member_mark}: it almost touches", frame.print.root(square));
     let cross = v.cross(&w);
     let formula = format!("offset² = ({cross})² / {} = {square}", v.quadrance());
     let foot = frame.lattice.point(a) + &v.scaled(&(v.dot(&w) / v.quadrance()));

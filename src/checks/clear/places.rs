@@ -14,7 +14,7 @@ pub(crate) fn same_place(frame: &Frame) -> Vec<Finding> {
             continue;
         }
         tally.add(|rule, level| {
-            let text = format!("{} stand in one place.", frame.print.joints(joints()));
+            let text = format!("{} stand in one place", frame.print.joints(joints()));
             let place = frame.print.place(frame.lattice.point(together[0] as usize));
             Finding::new(rule, level, text).joints(joint_ids(joints())).value("place", place)
         });
@@ -30,9 +30,9 @@ pub(crate) fn no_length(frame: &Frame) -> Vec<Finding> {
         tally.add(|rule, level| {
             let (mark, ends) = (frame.print.member(member), frame.print.joints([a, b]));
             let text = if a == b {
-                format!("{mark} begins and ends at {}.", frame.print.joint(a))
+                format!("{mark} begins and ends at {}", frame.print.joint(a))
             } else {
-                format!("{mark} has no length: {ends} stand in one place.")
+                format!("{mark} has no length: {ends} stand in one place")
             };
             Finding::new(rule, level, text)
                 .members(member_ids([member]))
@@ -64,7 +64,7 @@ fn doubled_finding(frame: &Frame, group: &[u32], rule: Rule, level: Level) -> Fi
     let members = || group.iter().take(frame.limits.most_findings).map(|&member| member as usize);
     let [a, b] = frame.ends[group[0] as usize];
     let text =
-        format!("{} all join {} and {}.", frame.print.members(members()), frame.print.joint(a), frame.print.joint(b));
+        format!("{} all join {} and {}", frame.print.members(members()), frame.print.joint(a), frame.print.joint(b));
     let text = if group.len() == 2 { text.replace(" all join ", " both join ") } else { text };
     let spare: Vec<MemberId> = group[1..].iter().map(|&member| MemberId(member)).collect();
     let edit = Edit::Remove(Selection { members: spare, ..Selection::default() });

@@ -10,8 +10,8 @@ use super::frame::{Frame, Tally, member_ids};
 use super::print::counted;
 use crate::exact::Rational;
 use crate::truss::Role;
-use num_traits::Zero;
-use std::collections::HashSet;
+use num_bigint::BigInt;
+use std::collections::{BTreeMap, HashSet};
 
 /// Answers the question for a placed truss: every member and every joint has its row.
 pub(crate) fn cut(frame: &Frame, chains: &[Chain]) -> (CutAnswer, Vec<Finding>) {
@@ -28,22 +28,17 @@ pub(crate) fn cut(frame: &Frame, chains: &[Chain]) -> (CutAnswer, Vec<Finding>) 
 }
 
 /// `8 lengths, 164'-3 5/16" in all: top chord 44'-8 11/16", bottom chord 40'-0"`.
-fn summary(frame: &Frame, members: &[super::MemberRow], steps: &[Rational]) -> String {
-    let lengths: HashSet<&Rational> = members.iter().map(|row| &row.quadrance).collect();
-    let total = |role: Option<Role>| {
-        let of_role = (0..members.len()).filter(|&m| role.is_none_or(|role| frame.role(m) == role));
-        of_role.fold(Rational::zero(), |sum, m| sum + &steps[m])
-    };
+fn summary(frame: &Frame, members: &[super::MemberRow], steps: &[BigInt]) -> String {
     if members.is_empty() {
         return "no members".into();
     }
-    let all = format!("{}, {} in all", counted(lengths.len(), "length", "lengths"), frame.print.length(&total(None)));
-    let roles: Vec<String> = Role::ALL
-        .into_iter()
-        .map(|role| (role, total(Some(role))))
-        .filter(|(_, length)| !length.is_zero())
-        .map(|(role, length)| format!("{} {}", role.name(), frame.print.length(&length)))
-        .collect();
+    let lengths: HashSet<&Rational> = members.iter().map(|row| &row.quadrance).collect();
+    let mut totals: BTreeMap<Role, BigInt> = BTreeMap::new();
+    steps.iter().enumerate().for_each(|(member, steps)| *totals.entry(frame.role(member)).or_default() += steps);
+    let length = |steps: &BigInt| frame.print.length(&frame.print.of_steps(steps));
+    let all = length(&totals.values().sum());
+    let all = format!("{}, {all} in all", counted(lengths.len(), "length", "lengths"));
+    let roles: Vec<String> = totals.iter().map(|(role, steps)| format!("{} {}", role.name(), length(steps))).collect();
     if roles.len() > 1 { format!("{all}: {}", roles.join(", ")) } else { all }
 }
 
@@ -55,7 +50,7 @@ fn too_long(frame: &Frame, members: &[super::MemberRow]) -> Vec<Finding> {
     for (member, row) in members.iter().enumerate().filter(|(_, row)| row.quadrance > square) {
         tally.add(|rule, level| {
             let mark = frame.print.member(member);
-            let text = format!("{mark} is {} long, more than {}.", row.length, frame.print.length(&limit));
+            let text = format!("{mark} is {} long, more than {}", row.length, frame.print.length(&limit));
             Finding::new(rule, level, text)
                 .members(member_ids([member]))
                 .value(format!("quadrance of {mark}"), frame.print.area(&row.quadrance))

@@ -5,11 +5,12 @@ use super::super::clear::neighbours;
 use super::super::frame::{Frame, Spoke};
 use crate::exact::Rational;
 use crate::truss::{JointId, MemberId};
+use num_bigint::BigInt;
 use std::collections::HashMap;
 
-/// One row for each member, and the printed lengths as numbers in the sheet's unit.
-pub(crate) fn member_rows(frame: &Frame) -> (Vec<MemberRow>, Vec<Rational>) {
-    let mut known: HashMap<[i64; 2], (MemberRow, Rational)> = HashMap::new();
+/// One row for each member, and the printed lengths in steps.
+pub(crate) fn member_rows(frame: &Frame) -> (Vec<MemberRow>, Vec<BigInt>) {
+    let mut known: HashMap<[i64; 2], (MemberRow, BigInt)> = HashMap::new();
     let row = |member: usize| {
         let Some(steps) = frame.lattice.steps_along(frame.ends[member]) else { return member_row(frame, member) };
         let (row, length) = known.entry(steps).or_insert_with(|| member_row(frame, member));
@@ -18,7 +19,7 @@ pub(crate) fn member_rows(frame: &Frame) -> (Vec<MemberRow>, Vec<Rational>) {
     (0..frame.ends.len()).map(row).unzip()
 }
 
-fn member_row(frame: &Frame, member: usize) -> (MemberRow, Rational) {
+fn member_row(frame: &Frame, member: usize) -> (MemberRow, BigInt) {
     let v = frame.lattice.displacement(frame.ends[member]);
     let quadrance = frame.lattice.quadrance(frame.ends[member]);
     let root = frame.print.rounded_root(&quadrance);
@@ -26,14 +27,14 @@ fn member_row(frame: &Frame, member: usize) -> (MemberRow, Rational) {
     let row = MemberRow {
         member: MemberId::new(member),
         bevel: sheet.bevel(&v.x, &v.y),
-        degrees: sheet.slope_degrees(&v.x, &v.y),
+        degrees: frame.print.slope(&frame.lattice, frame.ends[member]),
         run: v.x,
         rise: v.y,
         quadrance,
-        length: sheet.length(&root.length),
+        length: sheet.length(&frame.print.of_steps(&root.steps)),
         exact: root.exact,
     };
-    (row, root.length)
+    (row, root.steps)
 }
 
 /// Two displacements in lattice steps.
@@ -57,10 +58,10 @@ fn neighbour_spread(
     known: &mut HashMap<Corner, (Rational, String)>,
 ) -> NeighbourSpread {
     let pairs = [[at, s.far as usize], [at, t.far as usize]];
+    let (a, b) = (pairs[0][1], pairs[1][1]);
     let work_out = || {
-        let [v, w] = pairs.map(|pair| frame.lattice.displacement(pair));
-        let spread = frame.lattice.spread(at, pairs[0][1], pairs[1][1]).unwrap_or_default();
-        (spread, frame.print.degrees(&v, &w))
+        let spread = frame.lattice.spread(at, a, b).unwrap_or_default();
+        (spread, frame.print.degrees_at(&frame.lattice, at, a, b))
     };
     let (spread, degrees) = match pairs.map(|pair| frame.lattice.steps_along(pair)) {
         [Some(v), Some(w)] => known.entry([v, w]).or_insert_with(work_out).clone(),

@@ -136,7 +136,7 @@ fn tell(frame: &Frame, axis: usize, broken: &Broken, doubts: &mut Doubts) -> Opt
     let name = if axis == 0 { "x" } else { "y" };
     let break_it = if joints.len() == 1 { "breaks it" } else { "break it" };
     let text = format!(
-        "The halves are almost mirror images about {name} = {}: {} {break_it}, by {}.",
+        "the halves are almost mirror images about {name} = {}: {} {break_it}, by {}",
         frame.print.length(&low),
         frame.print.joints(joints.iter().copied()),
         deviation(frame, &worst)

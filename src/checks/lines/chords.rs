@@ -57,22 +57,17 @@ fn straight(
     };
     let place = if worst == start { String::new() } else { format!(", {along} from {}", print.joint(start)) };
     let text = format!(
-        "{} is almost straight: {} is {} off its line{place}{others}.",
+        "{} is almost straight: {} is {} off its line{place}{others}",
         chain.name(frame),
         print.joint(worst),
         deviation(frame, square)
     );
-    let finding = Finding::new(rule, level, capitalized(text))
+    let finding = Finding::new(rule, level, text)
         .joints(joint_ids(off.iter().copied().take(frame.limits.most_findings)))
         .members(member_ids(chain.members.iter().copied().take(frame.limits.most_findings)))
         .value("offset²", print.area(square));
     let finding = triple_quad(frame, finding, [base[0], worst, base[1]]);
     with_move_onto(frame, finding, base, off)
-}
-
-fn capitalized(text: String) -> String {
-    let mut characters = text.chars();
-    characters.next().map(|first| first.to_uppercase().chain(characters).collect()).unwrap_or_default()
 }
 
 /// Chains whose line rises or runs by almost nothing.
@@ -106,13 +101,13 @@ fn level_or_plumb(frame: &Frame, chain: &Chain, [a, b]: [usize; 2], rule: Rule, 
     };
     let what = if rule == Rule::NearlyLevel && rest.is_negative() { "falls" } else { what };
     let text = format!(
-        "{} is almost {word}: it {what} {} from {} to {}.",
+        "{} is almost {word}: it {what} {} from {} to {}",
         chain.name(frame),
         deviation(frame, &(rest * rest)),
         print.joint(a),
         print.joint(b)
     );
-    let finding = Finding::new(rule, level, capitalized(text))
+    let finding = Finding::new(rule, level, text)
         .joints(joint_ids([a, b]))
         .members(member_ids(chain.members.iter().copied().take(frame.limits.most_findings)))
         .value("run", &v.x)
@@ -127,7 +122,7 @@ fn level_or_plumb(frame: &Frame, chain: &Chain, [a, b]: [usize; 2], rule: Rule, 
     } else {
         Point { x: p.x.clone(), y: q.y.clone() }
     };
-    let text = format!("Move {} so that it is {word}.", print.joint(b));
+    let text = format!("Move {} so that it is {word}", print.joint(b));
     finding.mend(text, Some(Edit::MoveJoints(vec![(JointId::new(b), to)])))
 }
 
@@ -182,8 +177,8 @@ fn one_parallel(frame: &Frame, odd: &Chain, other: &Chain, doubts: &mut Doubts, 
     tally.add(|rule, level| {
         let (name, than) = (odd.name(frame), other.name(frame));
         let off = deviation(frame, &square);
-        let text = format!("{name} is almost parallel to {than}: it is {off} off over its length.");
+        let text = format!("{name} is almost parallel to {than}: it is {off} off over its length");
         let members = odd.members.iter().chain(&other.members).copied().take(frame.limits.most_findings);
-        spread_of(Finding::new(rule, level, capitalized(text)).members(member_ids(members)), &v, &w)
+        spread_of(Finding::new(rule, level, text).members(member_ids(members)), &v, &w)
     });
 }

@@ -37,7 +37,7 @@ fn one_corner(frame: &Frame, at: usize, s: Spoke, t: Spoke, tally: &mut Tally) {
     let members = [s.member as usize, t.member as usize];
     tally.add(|rule, level| {
         let text = format!(
-            "{} are almost square at {}: {} off at the end of the shorter.",
+            "{} are almost square at {}: {} off at the end of the shorter",
             frame.print.members(members),
             frame.print.joint(at),
             deviation(frame, &square())

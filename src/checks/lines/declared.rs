@@ -47,7 +47,7 @@ fn in_line(frame: &Frame, joints: &[usize]) -> Option<(Finding, Vec<usize>)> {
     let print = &frame.print;
     let [first, last] = base;
     let text = format!(
-        "says that {} are in line, but {} is {} off the line through {} and {}.",
+        "says that {} are in line, but {} is {} off the line through {} and {}",
         print.joints(joints.iter().copied()),
         print.joint(worst),
         deviation(frame, &offset(frame, base, worst)),
@@ -102,12 +102,12 @@ pub(crate) fn with_move_onto(frame: &Frame, finding: Finding, [a, b]: [usize; 2]
     }
     let (v, w) = (frame.lattice.displacement([a, b]), frame.lattice.displacement([a, joint]));
     let foot = frame.lattice.point(a) + &v.scaled(&(v.dot(&w) / v.quadrance()));
-    let text = format!("Move {} onto the line.", frame.print.joint(joint));
+    let text = format!("Move {} onto the line", frame.print.joint(joint));
     finding.mend(text, Some(Edit::MoveJoints(vec![(JointId::new(joint), foot)])))
 }
 
 fn no_line(rule: Rule, frame: &Frame, [a, b]: [usize; 2]) -> (Finding, Vec<usize>) {
-    let text = format!("has no line to go by: {} stand in one place.", frame.print.joints([a, b]));
+    let text = format!("has no line to go by: {} stand in one place", frame.print.joints([a, b]));
     (Finding::new(rule, Level::Fault, text), Vec::new())
 }
 
@@ -124,7 +124,7 @@ fn square(frame: &Frame, joints: &[usize]) -> Option<(Finding, Vec<usize>)> {
     let off = &dot * &dot / v.quadrance().max(w.quadrance());
     let print = &frame.print;
     let text = format!(
-        "says that {} is square to {a} and {b}, but it is {} off.",
+        "says that {} is square to {a} and {b}, but it is {} off",
         print.joint(at),
         deviation(frame, &off),
         a = print.joint(a),
@@ -156,7 +156,7 @@ fn parallel(frame: &Frame, joints: &[usize]) -> Option<(Finding, Vec<usize>)> {
     }
     let print = &frame.print;
     let text = format!(
-        "says that {}-{} and {}-{} are parallel, but they part by {} over the shorter.",
+        "says that {}-{} and {}-{} are parallel, but they part by {} over the shorter",
         print.joint(a),
         print.joint(b),
         print.joint(c),
@@ -186,7 +186,7 @@ fn equal(frame: &Frame, joints: &[usize]) -> Option<(Finding, Vec<usize>)> {
     let (first, second) = (print.root(&q1), print.root(&q2));
     let although = if first == second { ", although both print alike" } else { "" };
     let text = format!(
-        "says that {}-{} and {}-{} are equal, but they are {first} and {second}{although}.",
+        "says that {}-{} and {}-{} are equal, but they are {first} and {second}{although}",
         print.joint(a),
         print.joint(b),
         print.joint(c),

@@ -82,7 +82,7 @@ fn one_kind(frame: &Frame, family: &Group, odd: Vec<usize>, doubts: &Doubts, tal
         let print_alike = if long == other { ", which print alike" } else { "" };
         let verb = if odd.len() == 1 { "is" } else { "are" };
         let text = format!(
-            "{} {verb} almost as long as {}: {long} against {other}{print_alike}.",
+            "{} {verb} almost as long as {}: {long} against {other}{print_alike}",
             frame.print.members(odd.iter().copied()),
             frame.print.members(family.members.iter().copied())
         );

@@ -51,9 +51,8 @@ fn summary(asked: usize, fails: usize, near: usize) -> String {
         (0, _) => near_words,
         (1, 0) => format!("the declared relation holds; {near_words}"),
         (asked, 0) => format!("all {asked} declared relations hold; {near_words}"),
-        (asked, fails) => {
-            format!("{fails} of {} fail; {near_words}", counted(asked, "declared relation", "declared relations"))
-        }
+        (asked, 1) => format!("1 of {} fails; {near_words}", counted(asked, "declared relation", "declared relations")),
+        (asked, fails) => format!("{fails} of {asked} declared relations fail; {near_words}"),
     }
 }
 

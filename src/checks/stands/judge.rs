@@ -2,7 +2,7 @@
 
 use super::super::frame::Frame;
 use super::factor::{Factor, Pattern, TooMuch};
-use super::lift::{Velocities, lift};
+use super::lift::{NotLifted, Velocities, lift};
 use super::matrix::{Matrix, NOWHERE};
 use super::pebbles::most_rank;
 use crate::exact::modular::{Field, PRIMES, Scatter};
@@ -57,8 +57,9 @@ pub(crate) fn judge(frame: &Frame, matrix: &Matrix) -> Result<Judged, TooMuch> {
     for prime in PRIMES {
         let field = Field::new(prime);
         let Some(factor) = eliminated(matrix, &pattern, field, &|| matrix.residues(field)) else { continue };
-        let motion = nicest(&factor).and_then(|free| lift(matrix, &factor, free, work));
-        let is_settled = factor.free.is_empty() || motion.is_some();
+        let motion = nicest(&factor).map(|free| lift(matrix, &factor, free, work));
+        let is_settled = !matches!(motion, Some(Err(NotLifted::Unlucky)));
+        let motion = motion.and_then(Result::ok);
         if best.as_ref().is_none_or(|(other, _)| factor.rank() > other.rank() || is_settled) {
             best = Some((factor, motion));
         }
@@ -119,7 +120,7 @@ fn certainty(matrix: &Matrix, factor: &Factor, rank: usize, most: Option<usize>,
     }
     let few = factor.free.len() <= MOST_MOTIONS;
     // Each motion is 1 in its own free column and 0 in the others: together they are independent.
-    if few && factor.free.iter().all(|&free| lift(matrix, factor, free, work / factor.free.len()).is_some()) {
+    if few && factor.free.iter().all(|&free| lift(matrix, factor, free, work / factor.free.len()).is_ok()) {
         return Certainty::Motions;
     }
     Certainty::Agreed

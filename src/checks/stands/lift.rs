@@ -17,11 +17,24 @@ use std::ops::{Add, Div, Mul, Rem, Sub};
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub(crate) struct Velocities(pub(crate) Vec<[BigInt; 2]>);
 
+/// Why a motion was not lifted.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(crate) enum NotLifted {
+    /// The prime was unlucky: the motion modulo the prime is that of no exact one.
+    Unlucky,
+    /// The work is beyond the bound.
+    TooMuch,
+}
+
 /// Digits beyond which no fraction is looked for.
 const MOST_DIGITS: usize = 1024;
 
-/// The exact motion of a free column, verified; `None` when the work is beyond the bound or the prime was unlucky.
-pub(crate) fn lift(matrix: &Matrix, factor: &Factor, free: usize, most_work: usize) -> Option<Velocities> {
+/// The exact motion of a free column, verified.
+///
+/// # Errors
+///
+/// [`NotLifted`] says why there is none.
+pub(crate) fn lift(matrix: &Matrix, factor: &Factor, free: usize, most_work: usize) -> Result<Velocities, NotLifted> {
     let is_short = matrix.rows.iter().all(|row| matches!(row.direction, Direction::Short(_)));
     if is_short {
         lift_in::<i128>(matrix, factor, free, most_work)
@@ -69,7 +82,7 @@ impl Whole for BigInt {
     }
 }
 
-fn lift_in<T: Whole>(matrix: &Matrix, factor: &Factor, free: usize, most_work: usize) -> Option<Velocities> {
+fn lift_in<T: Whole>(matrix: &Matrix, factor: &Factor, free: usize, most_work: usize) -> Result<Velocities, NotLifted> {
     let parts: Vec<[T; 2]> = matrix.rows.iter().map(|row| T::parts(&row.direction)).collect();
     let mut digits = vec![factor.motion(free)];
     let mut residual: Vec<T> = vec![T::zero(); matrix.rows.len()];
@@ -78,14 +91,14 @@ fn lift_in<T: Whole>(matrix: &Matrix, factor: &Factor, free: usize, most_work: u
     loop {
         if digits.len() == next_try {
             if let Some(found) = whole_velocities(matrix, factor, &digits) {
-                return Some(found);
+                return Ok(found);
             }
             next_try *= 2;
         }
         if digits.len() >= MOST_DIGITS || digits.len().saturating_mul(cost) > most_work {
-            return None;
+            return Err(NotLifted::TooMuch);
         }
-        residual = quotient(matrix, factor, &parts, residual, &digits[digits.len() - 1])?;
+        residual = quotient(matrix, factor, &parts, residual, &digits[digits.len() - 1]).ok_or(NotLifted::Unlucky)?;
         digits.push(mend(matrix, factor, &residual));
     }
 }
@@ -96,7 +109,7 @@ fn words(matrix: &Matrix) -> usize {
         Direction::Short(_) => 0,
         Direction::Long([x, y]) => x.bits().max(y.bits()),
     });
-    1 + bits.max().unwrap_or(0) as usize / 16
+    1 + bits.max().unwrap_or(0) as usize / 4
 }
 
 /// (residual + R digit) / p; `None` when that is not whole, so that the prime was unlucky.

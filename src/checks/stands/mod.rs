@@ -79,7 +79,7 @@ fn motion(matrix: &Matrix, judged: &Judged) -> Vec<Motion> {
 }
 
 fn not_settled(unknowns: usize) -> (StandsAnswer, Vec<Finding>) {
-    let text = "The members are so tangled that the rank was not found within the bound of work: nothing is said about whether it stands.";
+    let text = "the members are so tangled that the rank was not found within the bound of work: nothing is said about whether it stands";
     let answer = StandsAnswer {
         state: StandsState::NotSettled,
         summary: "not settled within the bound of work".into(),

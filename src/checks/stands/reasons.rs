@@ -28,10 +28,10 @@ pub(crate) fn loose_reason(frame: &Frame, matrix: &Matrix, velocities: &Velociti
         match around {
             [] => {}
             [only] => {
-                return Some(format!(" Only {} reaches {mark}: it swings.", frame.print.member(only.member as usize)));
+                return Some(format!("; only {} reaches {mark}: it swings", frame.print.member(only.member as usize)));
             }
             _ if all_in_line(frame, joint) => {
-                return Some(format!(" All members at {mark} lie in one line: nothing stops it square to them."));
+                return Some(format!("; all members at {mark} lie in one line: nothing stops it square to them"));
             }
             _ => {}
         }
@@ -98,14 +98,14 @@ pub(crate) fn critical_reason(
     if let Some(joint) = judged.motion.as_ref().and_then(|velocities| joint_in_line(frame, matrix, velocities)) {
         let members = frame.around(joint).iter().map(|spoke| spoke.member as usize).collect();
         let mark = frame.print.joint(joint);
-        return (format!("All members at {mark} lie in one line: nothing stops it square to them."), members);
+        return (format!("all members at {mark} lie in one line: nothing stops it square to them"), members);
     }
     if let Some(reason) = nine_members(frame, stressed) {
         return (reason, stressed.to_vec());
     }
     let text = match stressed {
         [] => String::new(),
-        members => format!("{} hold each other instead of the joints.", frame.print.members(members.iter().copied())),
+        members => format!("{} hold each other instead of the joints", frame.print.members(members.iter().copied())),
     };
     (text, stressed.iter().copied().take(frame.limits.most_findings).collect())
 }
@@ -147,7 +147,7 @@ fn on_conic(frame: &Frame, joints: &[usize]) -> Option<String> {
         vec![x * x, x * y, y * y, x.clone(), y.clone(), Rational::one()]
     });
     let is_on = determinant(rows.collect()).is_zero();
-    is_on.then(|| format!("{} lie on one conic.", frame.print.joints(joints.iter().copied())))
+    is_on.then(|| format!("{} lie on one conic", frame.print.joints(joints.iter().copied())))
 }
 
 /// The three members that connect the two triangles of a prism, and whether their lines meet in a point.
@@ -165,7 +165,7 @@ fn connecting(frame: &Frame, joints: &[usize], joined: &dyn Fn(usize, usize) -> 
     let turn = v.cross(&w);
     if turn.is_zero() {
         let is_parallel = frame.lattice.turn(first, third) == Ordering::Equal;
-        return is_parallel.then(|| format!("The three members that connect two triangles, {names}, are parallel."));
+        return is_parallel.then(|| format!("the three members that connect two triangles, {names}, are parallel"));
     }
     let part = frame.lattice.displacement([first[0], second[0]]).cross(&w) / turn;
     let point = frame.lattice.point(first[0]) + &v.scaled(&part);
@@ -173,7 +173,7 @@ fn connecting(frame: &Frame, joints: &[usize], joined: &dyn Fn(usize, usize) -> 
     let meets = frame.lattice.displacement(third).cross(&from_third).is_zero();
     meets.then(|| {
         format!(
-            "The lines of the three members that connect two triangles, {names}, meet in {}.",
+            "the lines of the three members that connect two triangles, {names}, meet in {}",
             frame.print.place(&point)
         )
     })

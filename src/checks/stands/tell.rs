@@ -23,7 +23,7 @@ pub(crate) fn findings(frame: &Frame, matrix: &Matrix, judged: &Judged, unknowns
         return found;
     }
     if !has_supports {
-        let text = "No supports are drawn: the truss is judged as a free body.";
+        let text = "no supports are drawn: the truss is judged as a free body";
         found.push(Finding::new(Rule::Supports, Level::Note, text));
     }
     if judged.ways > 0 {
@@ -96,18 +96,18 @@ fn whole_text(frame: &Frame, part: &PartMotion) -> String {
     let joints = || frame.print.joints(part.joints.iter().copied());
     match &part.whole {
         Whole::Held => String::new(),
-        Whole::Loose(_) if part.supports.is_empty() => format!("No support holds the part with {}.", joints()),
+        Whole::Loose(_) if part.supports.is_empty() => format!("no support holds the part with {}", joints()),
         Whole::Loose(ways) => {
-            format!("The supports are too few: the part with {} can move whole, in {ways} ways.", joints())
+            format!("the supports are too few: the part with {} can move whole, in {ways} ways", joints())
         }
         Whole::Slides(along) => format!(
-            "The supports all hold in one direction: the part with {} slides along ({}, {}).",
+            "the supports all hold in one direction: the part with {} slides along ({}, {})",
             joints(),
             along.x,
             along.y
         ),
         Whole::Turns(point) => {
-            format!("The lines of all supports go through {}: the whole turns about it.", named_place(frame, point))
+            format!("the lines of all supports go through {}: the whole turns about it", named_place(frame, point))
         }
     }
 }
@@ -124,7 +124,7 @@ fn critical(frame: &Frame, matrix: &Matrix, judged: &Judged, unknowns: usize, pa
         Some(part) => (whole_text(frame, part), Vec::new()),
         None => critical_reason(frame, matrix, judged, &stressed),
     };
-    let text = format!("There are members enough, but in this very form it moves. {reason}");
+    let text = format!("there are members enough, but in this very form it moves: {reason}");
     let finding = Finding::new(Rule::CriticalForm, Level::Fault, text).members(member_ids(members));
     with_motion(frame, matrix, judged, rank_evidence(finding, matrix, judged, unknowns))
         .words("With the same members and the joints a little elsewhere it would stand.")
@@ -134,10 +134,10 @@ fn mechanism(frame: &Frame, matrix: &Matrix, judged: &Judged, unknowns: usize, w
     let missing = counted(within, "member is", "members are");
     let moving = judged.motion.as_ref().map(|velocities| moving_joints(matrix, velocities)).unwrap_or_default();
     let (verb, who) = (if moving.len() == 1 { "moves" } else { "move" }, frame.print.joints(moving.iter().copied()));
-    let moves = if moving.is_empty() { String::new() } else { format!(" {who} {verb}.") };
+    let moves = if moving.is_empty() { String::new() } else { format!(": {who} {verb}") };
     let reason =
         judged.motion.as_ref().and_then(|velocities| loose_reason(frame, matrix, velocities)).unwrap_or_default();
-    let text = format!("{missing} missing.{moves}{reason}");
+    let text = format!("{missing} missing{moves}{reason}");
     let finding = Finding::new(Rule::Mechanism, Level::Fault, text);
     let finding = with_motion(frame, matrix, judged, rank_evidence(finding, matrix, judged, unknowns));
     match judged.motion.as_ref().and_then(|velocities| place_for_member(frame, matrix, velocities)) {
@@ -154,10 +154,10 @@ fn mechanism(frame: &Frame, matrix: &Matrix, judged: &Judged, unknowns: usize, w
 fn rank_evidence(finding: Finding, matrix: &Matrix, judged: &Judged, unknowns: usize) -> Finding {
     let rows = matrix.rows.len() - matrix.ground;
     let certainty = match judged.certainty {
-        Certainty::Full => "The rank is full modulo a prime, so it is full.",
-        Certainty::Counted => "No places of the joints could give a greater rank: counted by the pebble game.",
-        Certainty::Motions => "As many independent motions were checked exactly as the rank is short.",
-        Certainty::Agreed => "The rank was found modulo a prime near 2³¹; it is not proved within the bound of work.",
+        Certainty::Full => "The rank is full modulo a prime, so it is full",
+        Certainty::Counted => "No places of the joints could give a greater rank: counted by the pebble game",
+        Certainty::Motions => "As many independent motions were checked exactly as the rank is short",
+        Certainty::Agreed => "The rank was found modulo a prime near 2³¹; it is not proved within the bound of work",
     };
     finding
         .formula(Law::RigidityRank, format!("{rows} members and holds, rank {}, {unknowns} needed", judged.rank))
@@ -214,7 +214,7 @@ fn spare(frame: &Frame, matrix: &Matrix, judged: &Judged) -> Option<Finding> {
         names.push(format!("the holds at {}", frame.print.joints(holds.iter().copied())));
     }
     let text = format!(
-        "{many} needed: any one of {} could go without loosening anything.",
+        "{many} needed: any one of {} could go without loosening anything",
         listed(names.iter().map(String::as_str))
     );
     let told = members.into_iter().take(frame.limits.most_findings);
