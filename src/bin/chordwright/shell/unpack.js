@@ -5,7 +5,7 @@
 // are told apart by the high half of the byte before them, and nothing depends on the place in the output. The names are
 // those of the LZMA specification. Every step writes a byte at least and stops where the data or the output ends, so
 // damaged data ends in an error, soon. The coder has to come out at zero where the data ends, which after damage it does
-// only once in some thousand million times.
+// only once in some thousand million times, but for the first few bytes; a program begins with those of every program.
 function unpack(data, size) {
   const damaged = () => new Error("the program in this file is damaged");
   const STATES = 12;
