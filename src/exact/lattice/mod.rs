@@ -9,12 +9,18 @@
 //! Every answer is exact and the same in each [`Tier`]; only [`Lattice::coarse`] is rounded, and never says that
 //! two things are apart that are not.
 
+mod direction;
+mod scale;
+
+pub use direction::Direction;
+
 use super::predicates::Orientation;
 use super::rational::Rational;
 use super::{Point, Vector};
 use num_bigint::BigInt;
 use num_integer::Integer;
 use num_traits::{One, Signed, ToPrimitive, Zero};
+use scale::{common_denominator, extent, scaled_all};
 use std::cmp::Ordering;
 
 /// The arithmetic that a [`Lattice`] works in.
@@ -39,15 +45,6 @@ pub struct Lattice<'a> {
     tier: Tier,
 }
 
-/// The direction from one point to another, as a row of whole numbers: in lowest terms when it fits machine integers.
-#[derive(Clone, Debug, PartialEq, Eq)]
-pub enum Direction {
-    /// It fits machine integers.
-    Short([i64; 2]),
-    /// It does not.
-    Long([BigInt; 2]),
-}
-
 /// A distance, prepared for many questions on one lattice.
 #[derive(Clone, Debug)]
 pub struct Reach {
@@ -60,11 +57,6 @@ pub struct Reach {
 
 const SMALL_SPAN: i64 = 1 << 30;
 const WIDE_SPAN: i64 = 1 << 60;
-/// Directions of more bits are left as they are.
-const REDUCED_BITS: u64 = 192;
-/// A common denominator beyond this many bits cannot give a lattice that fits 60 bits and is not looked for further.
-const DENOMINATOR_BITS: u64 = 256;
-
 impl<'a> Lattice<'a> {
     /// The lattice of these points, in the quickest tier that holds them.
     pub fn new(points: &'a [Point]) -> Lattice<'a> {
@@ -398,45 +390,6 @@ impl Reach {
     }
 }
 
-impl Direction {
-    /// The direction of a displacement in lowest terms.
-    pub fn of(v: &Vector) -> Direction {
-        let x = v.x.numer() * v.y.denom();
-        let y = v.y.numer() * v.x.denom();
-        Direction::of_parts([x, y])
-    }
-
-    /// In lowest terms, except where that would cost more than it saves.
-    fn of_parts([x, y]: [BigInt; 2]) -> Direction {
-        if x.bits().max(y.bits()) > REDUCED_BITS {
-            return Direction::Long([x, y]);
-        }
-        let common = x.gcd(&y);
-        if common.is_zero() {
-            return Direction::Short([0, 0]);
-        }
-        let (x, y) = (x / &common, y / &common);
-        let fits = |part: &BigInt| part.to_i64().filter(|part| part.abs() < WIDE_SPAN);
-        match (fits(&x), fits(&y)) {
-            (Some(x), Some(y)) => Direction::Short([x, y]),
-            _ => Direction::Long([x, y]),
-        }
-    }
-
-    /// True when there is no direction.
-    pub fn is_null(&self) -> bool {
-        *self == Direction::Short([0, 0])
-    }
-
-    /// Both parts.
-    pub fn parts(&self) -> [BigInt; 2] {
-        match self {
-            Direction::Short(parts) => parts.map(BigInt::from),
-            Direction::Long(parts) => parts.clone(),
-        }
-    }
-}
-
 /// Whether product²/whole is certainly more than a square rounded up; `None` when the roundings leave it open.
 fn quotient_is_beyond(product: u128, whole: u128, square: u128) -> Option<bool> {
     let allowed = square.checked_mul(whole)?;
@@ -472,58 +425,6 @@ fn half_plane(v: [i64; 2]) -> u8 {
         [x, y] if y > 0 || (y == 0 && x > 0) => 1,
         _ => 2,
     }
-}
-
-/// The least common denominator of all coordinates; `None` when it grows out of bounds.
-fn common_denominator(points: &[Point]) -> Option<BigInt> {
-    let mut common = BigInt::one();
-    let mut last = BigInt::one();
-    for denominator in points.iter().flat_map(|p| [p.x.denom(), p.y.denom()]) {
-        if *denominator == last || common.is_multiple_of(denominator) {
-            continue;
-        }
-        common = common.lcm(denominator);
-        if common.bits() > DENOMINATOR_BITS {
-            return None;
-        }
-        last.clone_from(denominator);
-    }
-    Some(common)
-}
-
-/// The lower left corner, and the greater of width and height.
-fn extent(points: &[Point]) -> (Point, Rational) {
-    let axis = |get: fn(&Point) -> &Rational| {
-        let low = points.iter().map(get).min().cloned().unwrap_or_default();
-        let high = points.iter().map(get).max().cloned().unwrap_or_default();
-        let span = high - &low;
-        (low, span)
-    };
-    let ((x, width), (y, height)) = (axis(|p| &p.x), axis(|p| &p.y));
-    (Point { x, y }, width.max(height))
-}
-
-/// All coordinates above `low` in lattice steps; `None` when they do not fit.
-fn scaled_all(points: &[Point], low: &Point, scale: &BigInt) -> Option<Vec<[i64; 2]>> {
-    let low = [&low.x, &low.y].map(|value| value.numer() * (scale / value.denom()));
-    let short = match (scale.to_i64(), low[0].to_i64(), low[1].to_i64()) {
-        (Some(scale), Some(x), Some(y)) => Some((scale, x, y)),
-        _ => None,
-    };
-    let one = |value: &Rational, low: &BigInt, short: Option<(i64, i64)>| {
-        if let (Some((scale, low)), Some(numer), Some(denom)) = (short, value.numer().to_i64(), value.denom().to_i64())
-            && let Some(steps) = numer.checked_mul(scale / denom)
-        {
-            return steps.checked_sub(low);
-        }
-        (value.numer() * (scale / value.denom()) - low).to_i64()
-    };
-    let place = |p: &Point| {
-        let x = one(&p.x, &low[0], short.map(|(scale, x, _)| (scale, x)))?;
-        let y = one(&p.y, &low[1], short.map(|(scale, _, y)| (scale, y)))?;
-        Some([x, y])
-    };
-    points.iter().map(place).collect()
 }
 
 #[cfg(test)]
