@@ -3,6 +3,7 @@
 //! The boxes are sorted along a space-filling curve and joined eight by eight, level upon level. A query looks only into
 //! boxes that it touches. Coordinates are those of [`crate::exact::Lattice::coarse`], which never part what touches.
 
+use crate::exact::order;
 /// A box: left, bottom, right, top.
 pub(crate) type Box4 = [i64; 4];
 
@@ -21,7 +22,7 @@ impl Boxes {
     /// The tree of these items and their boxes.
     pub(crate) fn new(boxes: impl Iterator<Item = (u32, Box4)>) -> Boxes {
         let mut all: Vec<(u64, u32, Box4)> = boxes.map(|(item, b)| (curve(b), item, b)).collect();
-        all.sort_unstable();
+        order::sort(&mut all);
         let mut levels = vec![all.iter().map(|&(_, _, b)| b).collect::<Vec<_>>()];
         while levels.last().is_some_and(|level| level.len() > JOINED) {
             let next = levels[levels.len() - 1].chunks(JOINED).map(hull).collect();

@@ -54,8 +54,8 @@ pub(crate) fn place_for_member(frame: &Frame, matrix: &Matrix, velocities: &Velo
     let mut pairs: Vec<[usize; 2]> = Vec::new();
     for a in moving.into_iter().map(|pair| matrix.joints[pair] as usize) {
         let near = frame.around(a).iter().take(LOOKED_AT).map(|spoke| spoke.far as usize);
-        let beyond: BTreeSet<usize> =
-            near.flat_map(|b| frame.around(b).iter().take(LOOKED_AT)).map(|spoke| spoke.far as usize).collect();
+        let mut beyond: BTreeSet<usize> = BTreeSet::new();
+        beyond.extend(near.flat_map(|b| frame.around(b).iter().take(LOOKED_AT)).map(|spoke| spoke.far as usize));
         pairs.extend(
             beyond.into_iter().filter(|&b| would_stop(frame, velocities, &column, a, b)).map(|b| [a.min(b), a.max(b)]),
         );

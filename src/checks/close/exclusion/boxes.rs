@@ -61,7 +61,8 @@ impl Frame {
         if !stress.unit.is_positive() || stress.origin.index() >= truss.joints.len() {
             return None;
         }
-        let places: BTreeMap<JointId, usize> = joints.iter().enumerate().map(|(place, id)| (*id, place)).collect();
+        let mut places: BTreeMap<JointId, usize> = BTreeMap::new();
+        places.extend(joints.iter().enumerate().map(|(place, id)| (*id, place)));
         let mut frame = Frame {
             ways: (1..joints.len()).map(|place| [0, place]).collect(),
             joints,
@@ -84,7 +85,7 @@ impl Frame {
         }
         order::sort(&mut frame.ways);
         frame.ways.dedup();
-        frame.by_ends = frame.ways.iter().enumerate().map(|(way, ends)| (*ends, way)).collect();
+        frame.by_ends.extend(frame.ways.iter().enumerate().map(|(way, ends)| (*ends, way)));
         frame.find_triangles();
         frame.start = frame.starting(truss, stress, &used)?;
         Some(frame)

@@ -38,7 +38,8 @@ pub(crate) struct Lean<'a> {
 /// A stress that the judge accepts, if one is found: first over the joints of the leaning conditions alone, then with
 /// their neighbours.
 pub(crate) fn stress(case: &Case, lean: &Lean) -> Option<Certificate> {
-    let mut joints: BTreeSet<JointId> = lean.sources.iter().flat_map(|s| joints_of(case, *s)).collect();
+    let mut joints: BTreeSet<JointId> = BTreeSet::new();
+    joints.extend(lean.sources.iter().flat_map(|s| joints_of(case, *s)));
     for ring in 0..4 {
         if joints.len() > MOST_JOINTS {
             break;
@@ -208,11 +209,15 @@ impl Finder<'_> {
 
     /// The widest bounded coordinate among the joints whose forms leave the most rest.
     fn widest(&self, boxes: &[Way], lines: &[Line]) -> Option<(usize, usize)> {
-        let leaning: BTreeSet<usize> = lines
-            .iter()
-            .filter(|line| matches!(line.part, Part::Condition(s, _) if self.case.conditions.len() > s.figure.index()))
-            .flat_map(|line| line.unknowns.iter().map(|u| u / 2 + 1))
-            .collect();
+        let mut leaning: BTreeSet<usize> = BTreeSet::new();
+        leaning.extend(
+            lines
+                .iter()
+                .filter(
+                    |line| matches!(line.part, Part::Condition(s, _) if self.case.conditions.len() > s.figure.index()),
+                )
+                .flat_map(|line| line.unknowns.iter().map(|u| u / 2 + 1)),
+        );
         let widths = leaning.into_iter().flat_map(|place| [(place, 0), (place, 1)]);
         let bounded = widths.filter_map(|(place, axis)| {
             let span = boxes_from_origin(self.frame, boxes, place)[axis];
