@@ -1,12 +1,12 @@
 //! Which joints can still move at a layout without changing a figure, and how weakly the others are held.
 //!
-//! The exact derivative of every condition at the layout, over the unknowns; its rank by elimination modulo a prime. A full
+//! The exact derivative of every condition at (a little beside) the layout, over the unknowns; its rank by elimination modulo a prime. A full
 //! rank modulo a prime is a proof. A short one is taken from two primes that agree.
 
 use super::meaning::{Axis, Condition, Function, leg};
 use super::search::model::Model;
 use super::trial::Problem;
-use crate::exact::modular::{Field, PRIMES};
+use crate::exact::modular::{Field, PRIMES, Scatter};
 use crate::exact::{Point, Rational, Surd, Vector, whole};
 use crate::truss::JointId;
 use num_traits::{Signed, Zero};
@@ -37,12 +37,33 @@ const MOST_FREE: usize = 400;
 pub(crate) fn freedom(problem: &Problem, places: &[Point]) -> Freedom {
     problem.with_base(&[], |base| {
         let model = &base.model;
+        // A layout may happen to be one where small changes cancel (a chord exactly straight); a little beside it they do
+        // not, and a joint that is held there is held, if weakly.
+        let beside = beside(problem, model, places);
         let rows: Vec<BTreeMap<usize, Rational>> =
-            problem.conditions.iter().flatten().filter_map(|condition| derivative(model, condition, places)).collect();
+            problem.conditions.iter().flatten().filter_map(|condition| derivative(model, condition, &beside)).collect();
         let moving = PRIMES[..2].iter().map(|prime| moving_unknowns(model.unknowns, &rows, Field::new(*prime)));
         let moving = moving.min_by_key(|(free, _)| free.len()).unwrap_or_default();
         told(problem, model, &moving.0, &moving.1)
     })
+}
+
+/// Places a few thousandths of a step beside a layout, without a pattern, that keep the exact ties.
+fn beside(problem: &Problem, model: &Model, places: &[Point]) -> Vec<Point> {
+    let mut scatter = Scatter::new(1);
+    let share = &problem.step / whole(1 << 20);
+    let mut unknowns = vec![Rational::zero(); model.unknowns];
+    for (coordinates, place) in model.coordinates.iter().zip(places) {
+        for (coordinate, value) in coordinates.iter().zip([&place.x, &place.y]) {
+            if let Some(unknown) = coordinate.unknown {
+                unknowns[unknown] = value - &coordinate.offset;
+            }
+        }
+    }
+    for value in &mut unknowns {
+        *value += &share * whole(scatter.draw() % 4096);
+    }
+    model.places(&unknowns)
 }
 
 fn told(problem: &Problem, model: &Model, free: &[usize], moving: &[bool]) -> Freedom {
@@ -233,7 +254,7 @@ pub(crate) fn weak(problem: &Problem, places: &[Point]) -> Vec<Weak> {
         let deviations = base.network.deviations(&base.floats_of(places));
         let mut sorted: Vec<f64> = deviations.iter().copied().filter(|d| d.is_finite()).collect();
         sorted.sort_by(f64::total_cmp);
-        let usual = sorted.get(sorted.len() / 2).copied().unwrap_or(0.0) * WEAK_TIMES;
+        let usual = sorted.get(sorted.len().saturating_sub(1) / 2).copied().unwrap_or(0.0) * WEAK_TIMES;
         let least = problem.step.abs() * whole(WEAK_STEPS);
         let mut found: Vec<Weak> = Vec::new();
         for (joint, coordinates) in model.coordinates.iter().enumerate() {

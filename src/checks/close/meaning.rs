@@ -83,7 +83,7 @@ pub(crate) struct Condition {
 
 impl Axis {
     /// The coordinate of a point.
-    pub(crate) fn of<'p>(self, point: &'p Point) -> &'p Rational {
+    pub(crate) fn of(self, point: &Point) -> &Rational {
         match self {
             Axis::X => &point.x,
             Axis::Y => &point.y,

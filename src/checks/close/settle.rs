@@ -106,7 +106,9 @@ fn weakly_fixed(truss: &Truss, joint: JointId, axis: Axis, by: &Rational) -> Fin
         ("sideways", "a run, or `plumb` with a neighbour")
     };
     let size = words::length(truss, by, &truss.step.value.clone().max(words::fine_step(truss)));
-    let text = format!("{mark} is only weakly fixed: rounding alone lets it stray {way} by about {size}");
+    // Where small changes cancel to first order the estimate has no end.
+    let stray = if *by < &truss.step.value * whole(1000) { format!(" by about {size}") } else { String::new() };
+    let text = format!("{mark} is only weakly fixed: rounding alone lets it stray far {way}{stray}");
     Finding::new(Rule::WeaklyFixed, Level::Caution, text).joints([joint]).mend(format!("add {what} at {mark}"), None)
 }
 

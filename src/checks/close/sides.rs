@@ -26,15 +26,20 @@ pub(crate) struct Side {
 pub(crate) fn sides(truss: &Truss) -> Vec<Side> {
     let links = links(truss);
     let mut found = Vec::new();
+    let mut seen = BTreeSet::new();
     for a in (0..truss.joints.len()).map(JointId::new) {
         let neighbours: Vec<JointId> = links[a.index()].iter().copied().take(MOST_NEIGHBOURS).collect();
-        let triangles = triangles_at(truss, &links, a, &neighbours);
-        let lone = triangles.is_empty() && truss.joint(a).loose && neighbours.len() >= 2;
-        if lone {
-            found.extend(sketched(truss, [neighbours[0], neighbours[1], a]));
+        let mut triangles = triangles_at(truss, &links, a, &neighbours);
+        if triangles.is_empty() && truss.joint(a).loose && neighbours.len() >= 2 {
+            triangles.push([a, neighbours[0], neighbours[1]]);
         }
-        // Each triangle once, at its first corner.
-        found.extend(triangles.into_iter().filter(|t| t[0] < t[1]).filter_map(|t| sketched(truss, t)));
+        for triangle in triangles {
+            let mut corners = triangle;
+            corners.sort_unstable();
+            if seen.insert(corners) {
+                found.extend(sketched(truss, triangle));
+            }
+        }
     }
     found
 }

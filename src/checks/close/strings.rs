@@ -179,7 +179,7 @@ fn spread_evenly(chain: &[&Link], count: usize) -> Vec<bool> {
     order::sort_by(&mut order, |&i, &k| {
         chain[k].size.cmp(&chain[i].size).then(from_centre(i).cmp(&from_centre(k))).then(i.cmp(&k))
     });
-    if n % 2 == 1 && count % 2 == 0 && chain.iter().all(|link| link.size == chain[0].size) {
+    if n % 2 == 1 && count.is_multiple_of(2) && chain.iter().all(|link| link.size == chain[0].size) {
         order.retain(|&i| i != n / 2);
         order.push(n / 2);
     }

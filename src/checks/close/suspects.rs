@@ -41,7 +41,7 @@ pub(crate) fn blame(
             blame.complete = false;
             break;
         }
-        let without = problem.trial(&[id], start);
+        let without = trial_without(problem, &[id], start);
         match &without.layout {
             Some(_) => blame.singles.extend(accused(problem, id, &[], &without)),
             None => {
@@ -58,6 +58,16 @@ pub(crate) fn blame(
         pairs(problem, failed, start, watch, &mut blame);
     }
     blame
+}
+
+/// From the places of the whole first; where those agree but for a side of the sketch, from the sketch once more.
+fn trial_without(problem: &Problem, disregarded: &[FigureId], start: &[[f64; 2]]) -> Trial {
+    let trial = problem.trial(disregarded, start);
+    if trial.mirrored.is_none() {
+        return trial;
+    }
+    let again = problem.trial(disregarded, &problem.adjusted(disregarded));
+    if again.layout.is_some() { again } else { trial }
 }
 
 fn next(candidates: &mut Vec<FigureId>) -> Option<FigureId> {
@@ -107,7 +117,7 @@ fn pairs(
                 blame.complete = false;
                 return;
             }
-            let without = problem.trial(&pair, start);
+            let without = trial_without(problem, &pair, start);
             if without.layout.is_some() {
                 let one = |id: FigureId| accused(problem, id, &pair, &without);
                 if let (Some(a), Some(b)) = (one(pair[0]), one(pair[1])) {

@@ -126,9 +126,13 @@ impl<'t> Problem<'t> {
                 .then(|| place::as_fractions(&base.model, &base.network, &self.conditions, &best.unknowns, keep))
                 .flatten()
         };
+        let (model, network, floats) = (&base.model, &base.network, best.unknowns.as_slice());
+        let circles = place::on_circles(model, network, &self.conditions, floats, &self.step, keep)
+            .take(if has_exact { 5 } else { 0 });
         place::on_lattices(&base.model, &base.network, &best.unknowns, &self.step, keep)
             .take(4)
             .chain(std::iter::once_with(fractions).flatten())
+            .chain(circles)
     }
 
     fn judged(&self, places: Vec<Point>, disregarded: &[FigureId], mirrored: Option<Vec<Point>>) -> Trial {

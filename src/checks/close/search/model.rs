@@ -131,7 +131,7 @@ impl Model {
             if root == ground_root.0 {
                 return Coordinate { unknown: None, offset: above - &ground_root.1 };
             }
-            let axis = if node % 2 == 0 { Axis::X } else { Axis::Y };
+            let axis = if node.is_multiple_of(2) { Axis::X } else { Axis::Y };
             let unknown = *number[root].get_or_insert_with(|| {
                 axes.push(axis);
                 axes.len() - 1

@@ -92,6 +92,78 @@ pub(crate) fn as_fractions(
     Some(model.places(&short))
 }
 
+/// Places where each exact length holds exactly although its joint is otherwise only rounded: the joint is put on a
+/// rational point of the circle about the other end, near where floats have it. One for each fineness, coarse first.
+///
+/// Rational points of a circle with a rational centre and radius are `((1 - t²), 2t) / (1 + t²)` for rational `t`.
+pub(crate) fn on_circles<'a>(
+    model: &'a Model,
+    network: &'a Network,
+    conditions: &'a [Vec<Condition>],
+    floats: &'a [f64],
+    step: &'a Rational,
+    keep: &'a dyn Fn(usize) -> bool,
+) -> impl Iterator<Item = Vec<Point>> + 'a {
+    let exact = model.exactly(floats);
+    CIRCLE_BITS.into_iter().filter_map(move |bits| {
+        let lattice = step / Rational::from_integer(BigInt::one() << (bits / 2));
+        let round = |value: &Rational| Some(&lattice * Rational::from_integer(nearest_multiple(value, &lattice)?));
+        let mut unknowns: Vec<Rational> = exact.as_ref()?.iter().map(round).collect::<Option<_>>()?;
+        let mut settled = vec![false; unknowns.len()];
+        for row in network.rows.iter().enumerate().filter(|(row, r)| keep(*row) && r.exact).map(|(_, r)| r) {
+            put_on_circle(model, &conditions[row.figure][row.condition], &mut unknowns, &mut settled, bits)?;
+        }
+        Some(model.places(&unknowns))
+    })
+}
+
+/// Fineness of the parameter of circles, in binary places.
+const CIRCLE_BITS: [u32; 5] = [8, 12, 18, 26, 36];
+
+/// Moves one end of an exact length onto its circle; `None` when both ends are settled already or it is no such length.
+fn put_on_circle(
+    model: &Model,
+    condition: &Condition,
+    unknowns: &mut [Rational],
+    settled: &mut [bool],
+    bits: u32,
+) -> Option<()> {
+    use crate::checks::close::meaning::Function;
+    let Function::Quadrance { from, to } = condition.function else { return None };
+    let radius = crate::exact::Surd::of_quadrance(condition.possible.lo())?.rational()?.clone();
+    let free = |joint: crate::truss::JointId, settled: &[bool]| {
+        let [x, y] = [0, 1].map(|axis| model.coordinates[joint.index()][axis].unknown.filter(|u| !settled[*u]));
+        Some([x?, y?])
+    };
+    let (moving, centre, slots) = match (free(to, settled), free(from, settled)) {
+        (Some(slots), _) => (to, from, slots),
+        (None, Some(slots)) => (from, to, slots),
+        (None, None) => return None,
+    };
+    let places = model.places(unknowns);
+    let (centre, place) = (places[centre.index()].clone(), &places[moving.index()]);
+    let (dx, dy) = (to_float(&(&place.x - &centre.x)), to_float(&(&place.y - &centre.y)));
+    let tangent = dy / (dx.hypot(dy) + dx.abs());
+    let unit = BigInt::one() << bits;
+    let t =
+        (Rational::from_float(tangent)? * Rational::from_integer(unit.clone())).round() / Rational::from_integer(unit);
+    let below = Rational::one() + &t * &t;
+    let along = (Rational::one() - &t * &t) / &below * &radius;
+    let target = [if dx < 0.0 { -along } else { along }, whole(2) * &t / &below * &radius];
+    for (axis, (slot, offset)) in slots.into_iter().zip(target).enumerate() {
+        let base = if axis == 0 { &centre.x } else { &centre.y };
+        unknowns[slot] = base + offset - &model.coordinates[moving.index()][axis].offset;
+        settled[slot] = true;
+    }
+    // The other end stays where it is from now on.
+    for coordinate in &model.coordinates[if moving == to { from } else { to }.index()] {
+        if let Some(unknown) = coordinate.unknown {
+            settled[unknown] = true;
+        }
+    }
+    Some(())
+}
+
 /// How far a condition is off, about as a length; `None` where it has no value.
 fn exact_residual(condition: &Condition, places: &[Point]) -> Option<Rational> {
     use crate::checks::close::meaning::Function;
