@@ -58,10 +58,6 @@ impl Page {
         self.pointer(PointerAct::Up { id: 1, at: Pixel::new(x, y) })
     }
 
-    fn press(&mut self, x: f64, y: f64) -> &mut Page {
-        self.down(x, y).up(x, y)
-    }
-
     fn drag(&mut self, from: (f64, f64), to: (f64, f64)) -> &mut Page {
         self.down(from.0, from.1).moved((from.0 + to.0) / 2.0, (from.1 + to.1) / 2.0).moved(to.0, to.1).up(to.0, to.1)
     }
@@ -256,7 +252,7 @@ fn a_second_finger_zooms_and_does_not_steal_the_drag() {
 
 #[test]
 fn answers_to_an_older_truss_are_not_shown_as_the_answers_to_this_one() {
-    let mut page = king_post();
+    let page = king_post();
     let old = page.state.fresh().expect("answers").report.clone();
     let (state, effects) =
         update(&page.state, Event::CellEntered(Cell::new(Row::Joint(JointId(3)), Column::Y), "7'".into()));

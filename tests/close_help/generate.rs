@@ -50,8 +50,14 @@ pub struct Planted {
     pub truth: Vec<Point>,
 }
 
+/// A joint's mark and its true place.
+type Marked = (String, Point);
+
+/// Two joints that a member joins, and what it is for.
+type Joined = (usize, usize, Role);
+
 /// True places: bottom joints L0..Ln, top joints U1..U(n-1) (parallel: U0..Un), in inches.
-fn truth(shape: Shape, panels: usize, dice: &mut Dice) -> (Vec<(String, Point)>, Vec<(usize, usize, Role)>) {
+fn truth(shape: Shape, panels: usize, dice: &mut Dice) -> (Vec<Marked>, Vec<Joined>) {
     let panel = q(dice.between(48 * 64, 84 * 64), 64);
     let height = q(dice.between(60 * 64, 110 * 64), 64);
     let n = panels as i64;

@@ -342,14 +342,17 @@ fn squares_between(lengths: Span) -> (i128, Option<i128>) {
     (lo * lo, hi)
 }
 
-fn triangle(boxes: &mut [Way], [ab, bc, ac]: [usize; 3]) -> bool {
-    for axis in 0..2 {
-        let [x, y, z] = [ab, bc, ac].map(|way| boxes[way][axis]);
-        let (Some(z), Some(x), Some(y)) = (z.meet(x.plus(y)), x.meet(z.minus(y)), y.meet(z.minus(x))) else {
-            return false;
-        };
-        (boxes[ab][axis], boxes[bc][axis], boxes[ac][axis]) = (x, y, z);
-    }
+fn triangle(boxes: &mut [Way], ways: [usize; 3]) -> bool {
+    [0, 1].into_iter().all(|axis| triangle_along(boxes, ways, axis))
+}
+
+/// One axis of a triangle of ways: the first two add up to the third. False when nothing is left.
+fn triangle_along(boxes: &mut [Way], [ab, bc, ac]: [usize; 3], axis: usize) -> bool {
+    let [x, y, z] = [ab, bc, ac].map(|way| boxes[way][axis]);
+    let (Some(z), Some(x), Some(y)) = (z.meet(x.plus(y)), x.meet(z.minus(y)), y.meet(z.minus(x))) else {
+        return false;
+    };
+    (boxes[ab][axis], boxes[bc][axis], boxes[ac][axis]) = (x, y, z);
     true
 }
 

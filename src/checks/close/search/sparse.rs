@@ -97,10 +97,10 @@ impl Pattern {
     /// Factors the matrix; a direction without a pivot gets a huge one, so that it does not move.
     pub(crate) fn factor(&self, mut numbers: Vec<f64>) -> Factor<'_> {
         let diagonals: Vec<f64> = self.starts[..self.size].iter().map(|&start| numbers[start]).collect();
-        for column in 0..self.size {
+        for (column, diagonal) in diagonals.iter().enumerate() {
             let (start, end) = (self.starts[column], self.starts[column + 1]);
             let rest = numbers[start];
-            let pivot = if rest > LEAST_PIVOT * diagonals[column] { rest.sqrt() } else { 1e60 };
+            let pivot = if rest > LEAST_PIVOT * diagonal { rest.sqrt() } else { 1e60 };
             numbers[start] = pivot;
             numbers[start + 1..end].iter_mut().for_each(|n| *n /= pivot);
             self.spread_column(&mut numbers, start, end);
