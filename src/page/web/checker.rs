@@ -36,10 +36,9 @@ impl Checker {
         {
             let mut inner = self.inner.borrow_mut();
             inner.next = Some((revision, truss));
-            if inner.busy.take().is_some() {
-                if let Some((worker, _)) = inner.worker.take() {
-                    worker.terminate();
-                }
+            let was_busy = inner.busy.take().is_some();
+            if let Some((worker, _)) = inner.worker.take_if(|_| was_busy) {
+                worker.terminate();
             }
         }
         self.send();
