@@ -100,7 +100,8 @@ fn a_triangle_that_cannot_be() {
     assert_eq!((answer.state, answer.proof), (CloseState::DoesNotClose, Proof::Exclusion));
     let excluded = findings.iter().find(|f| f.rule == Rule::Excluded).expect("a finding");
     assert!(excluded.text.contains("cannot be a triangle: 4'-0\" + 5'-2\" < 9'-8 1/2\""), "{}", excluded.text);
-    assert!(!answer.suspects.is_empty(), "any one of the three may be the wrong one");
+    let suspects: Vec<usize> = answer.suspects.iter().map(|suspect| suspect.figure.index()).collect();
+    assert_eq!(suspects.len(), 3, "any one of the three may be the wrong one: {suspects:?}");
 }
 
 #[test]

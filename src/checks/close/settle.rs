@@ -30,7 +30,10 @@ pub(crate) fn settle(
     let trial = problem.trial(&[], &start);
     match (&trial.layout, &trial.mirrored) {
         (Some(layout), _) => closed(&problem, layout),
-        (None, Some(places)) => mirrored(&problem, places),
+        (None, Some(places)) => match problem.trial_on_sketched_sides(&[]).layout {
+            Some(layout) => closed(&problem, &layout),
+            None => mirrored(&problem, places),
+        },
         (None, None) => open(&problem, &trial, &start, watch),
     }
 }

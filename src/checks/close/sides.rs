@@ -22,6 +22,19 @@ pub(crate) struct Side {
     pub orientation: Orientation,
 }
 
+impl Side {
+    /// True when floats put the corners the way round that was sketched; a guide, never a verdict.
+    pub(crate) fn holds_about(&self, places: &[[f64; 2]]) -> bool {
+        let [a, b, c] = self.joints.map(|id| places[id.index()]);
+        let cross = (b[0] - a[0]) * (c[1] - a[1]) - (b[1] - a[1]) * (c[0] - a[0]);
+        match self.orientation {
+            Orientation::Left => cross > 0.0,
+            Orientation::Right => cross < 0.0,
+            Orientation::On => true,
+        }
+    }
+}
+
 /// Every side that the sketch tells, in the order of the joints.
 pub(crate) fn sides(truss: &Truss) -> Vec<Side> {
     let links = links(truss);

@@ -46,7 +46,8 @@ pub(crate) fn blame(
             Some(_) => blame.singles.extend(accused(problem, id, &[], &without)),
             None => {
                 let leaning = leaning_figures(problem, &[id], &without);
-                if !leaning.is_empty() {
+                // Where the others close but for a side of the sketch, nothing is leant on.
+                if !leaning.is_empty() && without.mirrored.is_none() {
                     candidates.retain(|candidate| leaning.contains(candidate));
                 }
                 failed.push((id, without));
@@ -67,7 +68,11 @@ fn trial_without(problem: &Problem, disregarded: &[FigureId], start: &[[f64; 2]]
         return trial;
     }
     let again = problem.trial(disregarded, &problem.adjusted(disregarded));
-    if again.layout.is_some() { again } else { trial }
+    if again.layout.is_some() {
+        return again;
+    }
+    let guarded = problem.trial_on_sketched_sides(disregarded);
+    if guarded.layout.is_some() { guarded } else { trial }
 }
 
 fn next(candidates: &mut Vec<FigureId>) -> Option<FigureId> {

@@ -80,24 +80,43 @@ impl<'t> Problem<'t> {
         self.with_base(disregarded, |base| {
             let keep = |row: usize| base.keeps(row, disregarded);
             let start = base.model.unknowns_from(&base.network.offsets, &base.model.float_sketch(self.truss));
-            base.network.places(&base.network.adjust(&start, self.effort.adjustments, &keep))
+            base.network.places(&base.network.adjust(&start, self.effort.adjustments, &keep, &|_| true))
         })
     }
 
     /// Looks for a layout without the disregarded figures, from these places.
     pub(crate) fn trial(&self, disregarded: &[FigureId], start: &[[f64; 2]]) -> Trial {
-        self.with_base(disregarded, |base| self.trial_on(base, disregarded, start))
+        self.with_base(disregarded, |base| self.trial_on(base, disregarded, start, &|_| true))
     }
 
-    fn trial_on(&self, base: &Base, disregarded: &[FigureId], start: &[[f64; 2]]) -> Trial {
+    /// Looks for a layout from the sketch, without a step over a line that the sketch has a joint on one side of.
+    ///
+    /// Slower than [`Problem::trial`]: for where that found a mirror image.
+    pub(crate) fn trial_on_sketched_sides(&self, disregarded: &[FigureId]) -> Trial {
+        self.with_base(disregarded, |base| {
+            let keeps_sides = |unknowns: &[f64]| {
+                let places = base.network.places(unknowns);
+                self.sides.iter().all(|side| side.holds_about(&places))
+            };
+            self.trial_on(base, disregarded, &base.model.float_sketch(self.truss), &keeps_sides)
+        })
+    }
+
+    fn trial_on(
+        &self,
+        base: &Base,
+        disregarded: &[FigureId],
+        start: &[[f64; 2]],
+        allowed: &dyn Fn(&[f64]) -> bool,
+    ) -> Trial {
         let (model, network) = (&base.model, &base.network);
         let keep = |row: usize| base.keeps(row, disregarded);
         if model.unknowns == 0 {
             return self.judged(model.places(&[]).into_iter().collect(), disregarded, None);
         }
         let start = model.unknowns_from(&network.offsets, start);
-        let start = network.adjust(&start, self.effort.adjustments, &keep);
-        let Some(best) = network.least_worst(&start, self.effort.rounds, &keep) else {
+        let start = network.adjust(&start, self.effort.adjustments, &keep, allowed);
+        let Some(best) = network.least_worst(&start, self.effort.rounds, &keep, allowed) else {
             return Trial { layout: None, mirrored: None, best: None };
         };
         if best.overshoot > DOUBT {

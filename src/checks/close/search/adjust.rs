@@ -43,8 +43,15 @@ impl Network {
         self.rows.iter().map(|row| row.linearise(&places)).collect()
     }
 
-    /// Adjusts the unknowns with at most `rounds` steps; rows for which `keep` says no are left out.
-    pub(crate) fn adjust(&self, start: &[f64], rounds: usize, keep: &dyn Fn(usize) -> bool) -> Vec<f64> {
+    /// Adjusts the unknowns with at most `rounds` steps; rows for which `keep` says no are left out, and no step is made to
+    /// where `allowed` says no.
+    pub(crate) fn adjust(
+        &self,
+        start: &[f64],
+        rounds: usize,
+        keep: &dyn Fn(usize) -> bool,
+        allowed: &dyn Fn(&[f64]) -> bool,
+    ) -> Vec<f64> {
         let mut unknowns = start.to_vec();
         let mut damping = 1e-3;
         let mut knee = self.first_knee(&unknowns, keep);
@@ -54,7 +61,7 @@ impl Network {
             let cost = self.cost(&lines, knee, keep);
             let (next, moved) = self.damped_step(&unknowns, &lines, knee, damping, keep);
             let cost_next = self.cost(&self.linearised(&next), knee, keep);
-            if cost_next.is_finite() && cost_next <= cost {
+            if cost_next.is_finite() && cost_next <= cost && allowed(&next) {
                 unknowns = next;
                 damping = (damping * 0.1).max(1e-9);
                 let settled = cost - cost_next <= 1e-10 * cost || moved < 1e-12;
@@ -115,7 +122,7 @@ impl Network {
         }
         let typical = diagonal.iter().sum::<f64>() / self.unknowns.max(1) as f64;
         for (unknown, d) in diagonal.iter().enumerate() {
-            self.pattern.add_diagonal(&mut matrix, unknown, damping * d.max(typical * 1e-6) + typical * 1e-14);
+            self.pattern.add_diagonal(&mut matrix, unknown, damping * d.max(typical * 1e-1) + typical * 1e-14);
         }
         let step = self.pattern.factor(matrix).solve(&rhs);
         let moved = step.iter().fold(0.0f64, |a, b| a.max(b.abs()));

@@ -27,8 +27,15 @@ impl Network {
         overshoots.fold(f64::NEG_INFINITY, f64::max)
     }
 
-    /// Minimises the worst overshoot from `start`, in at most `rounds` programmes.
-    pub(crate) fn least_worst(&self, start: &[f64], rounds: usize, keep: &dyn Fn(usize) -> bool) -> Option<Best> {
+    /// Minimises the worst overshoot from `start`, in at most `rounds` programmes, without a step to where `allowed` says
+    /// no.
+    pub(crate) fn least_worst(
+        &self,
+        start: &[f64],
+        rounds: usize,
+        keep: &dyn Fn(usize) -> bool,
+        allowed: &dyn Fn(&[f64]) -> bool,
+    ) -> Option<Best> {
         let mut best = Best { unknowns: start.to_vec(), overshoot: f64::INFINITY, multipliers: Vec::new() };
         best.overshoot = self.worst(&self.linearised(start), keep);
         let mut reach = 0.05;
@@ -36,7 +43,8 @@ impl Network {
             let lines = self.linearised(&best.unknowns);
             let optimum = self.overshoot_programme(&lines, reach, keep).solve()?;
             let next: Vec<f64> = best.unknowns.iter().zip(&optimum.changes).map(|(u, d)| u + d).collect();
-            let overshoot = self.worst(&self.linearised(&next), keep);
+            let overshoot =
+                if allowed(&next) { self.worst(&self.linearised(&next), keep) } else { f64::INFINITY };
             let (expected, gained) = (best.overshoot - optimum.overshoot, best.overshoot - overshoot);
             let moved = optimum.changes.iter().fold(0.0f64, |a, d| a.max(d.abs()));
             if best.multipliers.is_empty() || gained >= 0.0 {
