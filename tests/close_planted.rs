@@ -5,7 +5,7 @@ mod close_help;
 use chordwright::checks::{CloseAnswer, CloseState, Effort, Proof, close};
 use chordwright::exact::{Point, Rational, quadrance, whole};
 use chordwright::truss::{FigureKind, JointId, Truss};
-use close_help::generate::{Dice, SHAPES, clean, mixed, slip};
+use close_help::generate::{Dice, SHAPES, clean, mixed, slip, slip_of_any_kind};
 use close_help::q;
 use num_traits::Zero;
 
@@ -112,4 +112,36 @@ fn clean_drawings_with_figures_of_every_kind_close() {
         let (answer, found) = close(&planted.truss, &Effort::default());
         assert_eq!(answer.state, CloseState::Closes, "{seed}: {} {:?}", answer.summary, found.first());
     }
+}
+
+#[test]
+fn a_slip_in_a_figure_of_any_kind_is_excluded_by_proof_and_found() {
+    let mut tally = Tally::default();
+    for seed in 0..400 {
+        let truth = mixed(seed).truss;
+        let mut dice = Dice::new(seed + 5000);
+        let figure = dice.below(truth.figures.len());
+        let Some(truss) = slip_of_any_kind(&truth, figure, &mut dice) else { continue };
+        let answer = asked(&truss);
+        tally.planted += 1;
+        match answer.state {
+            CloseState::Closes => tally.still_close += 1,
+            CloseState::DoesNotClose => {
+                tally.excluded += 1;
+                let place = answer.suspects.iter().position(|suspect| suspect.figure.index() == figure);
+                tally.suspected += usize::from(place.is_some());
+                tally.first += usize::from(place == Some(0));
+                if place.is_none() {
+                    println!("seed {seed}, {}: {}", truth.figures[figure].kind.name(), answer.summary);
+                }
+            }
+            other => println!("seed {seed}: {}: {}", other.name(), answer.summary),
+        }
+    }
+    println!("{tally:?}");
+    let wrong = tally.planted - tally.still_close;
+    assert!(tally.planted >= 300 && tally.still_close * 10 <= tally.planted, "{tally:?}");
+    assert!(tally.excluded * 100 >= wrong * 95, "at least 95 in 100 are excluded by proof: {tally:?}");
+    assert!(tally.suspected * 100 >= tally.excluded * 99, "the slipped figure is a suspect: {tally:?}");
+    assert!(tally.first * 100 >= wrong * 95, "and first in at least 95 of 100: {tally:?}");
 }

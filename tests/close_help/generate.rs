@@ -163,6 +163,33 @@ pub fn slip(truss: &Truss, figure: usize, by: &Rational) -> Truss {
     slipped
 }
 
+/// Changes a figure of any kind by a plain slip of its size: an eighth of an inch to four, half a degree to five, a
+/// fiftieth of a spread, an inch of pitch. `None` where the value would leave what the kind allows, or the figure is a
+/// relation.
+pub fn slip_of_any_kind(truss: &Truss, figure: usize, dice: &mut Dice) -> Option<Truss> {
+    use num_traits::Signed;
+    let sign = if dice.below(2) == 0 { 1 } else { -1 };
+    let mut slipped = truss.clone();
+    let (value, by, most) = match &mut slipped.figures[figure].kind {
+        FigureKind::Run { value, .. } | FigureKind::Rise { value, .. } => {
+            *value = Written::plain(&value.value + q(dice.between(2, 64) * sign, 16));
+            return Some(slipped);
+        }
+        FigureKind::Length { value, .. } => (value, q(dice.between(2, 64) * sign, 16), None),
+        FigureKind::Angle { value, .. } => (value, q(dice.between(5, 50) * sign, 10), Some(w(180))),
+        FigureKind::Spread { value, .. } => (value, q(dice.between(20, 100) * sign, 1000), Some(w(1))),
+        FigureKind::Pitch { rise, run, .. } => {
+            let small = if rise.value < run.value { rise } else { run };
+            (small, q(dice.between(4, 32) * sign, 16), Some(w(12)))
+        }
+        _ => return None,
+    };
+    let changed = &value.value + by;
+    let is_allowed = changed.is_positive() && most.is_none_or(|most| changed < most);
+    *value = Written::plain(changed);
+    is_allowed.then_some(slipped)
+}
+
 /// A few joints with figures of every kind between them, each printed from the truth; two joints are set.
 pub fn mixed(seed: u64) -> Planted {
     let mut dice = Dice::new(seed.wrapping_add(77));

@@ -4,6 +4,7 @@
 //! least worst overshoot leans on, and each trial that fails narrows them to those that it leans on as well.
 
 use super::implied::{Accused, accused};
+use super::meaning::is_all_set;
 use super::trial::{Problem, Trial};
 use super::{Progress, Stage};
 use crate::truss::FigureId;
@@ -31,7 +32,11 @@ pub(crate) fn blame(
     watch: &mut dyn FnMut(Progress) -> bool,
 ) -> Blame {
     let mut blame = Blame { singles: Vec::new(), pairs: Vec::new(), complete: true };
-    let mut candidates = leaning_figures(problem, &[], trial);
+    // A figure that the set joints contradict is in every proof by itself, so no other can be to blame alone.
+    let mut candidates = set_failures(problem);
+    if candidates.is_empty() {
+        candidates = leaning_figures(problem, &[], trial);
+    }
     candidates.truncate(problem.effort.trials);
     let mut failed: Vec<(FigureId, Trial)> = Vec::new();
     let mut done = 0;
@@ -54,11 +59,46 @@ pub(crate) fn blame(
             }
         }
     }
+    if blame.singles.is_empty() && blame.complete {
+        from_the_sketch(problem, &failed, watch, &mut blame);
+    }
     put_in_order(&mut blame.singles);
     if blame.singles.is_empty() && blame.complete {
         pairs(problem, failed, start, watch, &mut blame);
     }
     blame
+}
+
+/// The figures among set joints that do not hold.
+fn set_failures(problem: &Problem) -> Vec<FigureId> {
+    let truss = problem.truss;
+    let places = truss.points();
+    let fails = |id: &FigureId| {
+        is_all_set(truss, &truss.figure(*id).kind)
+            && problem.conditions[id.index()].iter().any(|condition| condition.fails(&places))
+    };
+    (0..truss.figures.len()).map(FigureId::new).filter(fails).collect()
+}
+
+/// Tries those that failed once more, each from the sketch: the places of the whole, spoilt by the wrong figure, can lead
+/// astray.
+fn from_the_sketch(
+    problem: &Problem,
+    failed: &[(FigureId, Trial)],
+    watch: &mut dyn FnMut(Progress) -> bool,
+    blame: &mut Blame,
+) {
+    let tried = failed.len().min(PAIR_WIDTH);
+    for (done, (id, _)) in failed.iter().take(tried).enumerate() {
+        if !watch(Progress { stage: Stage::Suspects, done, of: tried }) {
+            blame.complete = false;
+            return;
+        }
+        let again = problem.trial(&[*id], &problem.adjusted(&[*id]));
+        if again.layout.is_some() {
+            blame.singles.extend(accused(problem, *id, &[], &again));
+        }
+    }
 }
 
 /// From the places of the whole first; where those agree but for a side of the sketch, from the sketch once more.
@@ -111,7 +151,11 @@ fn pairs(
 ) {
     let mut tried = Vec::new();
     for (first, without) in failed.iter().take(PAIR_WIDTH) {
-        for second in leaning_figures(problem, &[*first], without).into_iter().take(PAIR_WIDTH) {
+        let leaning = leaning_figures(problem, &[*first], without);
+        for second in set_failures(problem).into_iter().chain(leaning).take(PAIR_WIDTH) {
+            if second == *first {
+                continue;
+            }
             let pair = [*first.min(&second), *first.max(&second)];
             if tried.contains(&pair) {
                 continue;
