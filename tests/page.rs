@@ -1,6 +1,6 @@
 //! The page's state, driven as the browser drives it: events in, state and effects out.
 
-use chordwright::checks::{Limits, report};
+use chordwright::checks::report;
 use chordwright::exact::{Point, ratio, whole};
 use chordwright::page::state::{
     Book, Button, Cell, Column, Effect, Event, KeyPress, Modifiers, Pen, Pixel, PointerAct, Row, State, Thing, Tone,
@@ -32,9 +32,9 @@ impl Page {
         let (state, effects) = update(&self.state, event);
         self.state = state;
         for effect in effects {
-            if let Effect::Check(revision, truss) = &effect {
-                let answers = report(truss, &Limits::default());
-                self.state = update(&self.state, Event::Answered(*revision, Box::new(answers), String::new())).0;
+            if let Effect::Check(ask) = &effect {
+                let answers = report(&ask.truss, &ask.limits);
+                self.state = update(&self.state, Event::Answered(ask.revision, Box::new(answers), String::new())).0;
             }
             self.effects.push(effect);
         }
@@ -257,8 +257,10 @@ fn answers_to_an_older_truss_are_not_shown_as_the_answers_to_this_one() {
     let (state, effects) =
         update(&page.state, Event::CellEntered(Cell::new(Row::Joint(JointId(3)), Column::Y), "7'".into()));
     assert!(state.fresh().is_none() && state.is_checking());
-    let revision =
-        effects.iter().find_map(|e| if let Effect::Check(r, _) = e { Some(*r) } else { None }).expect("a check");
+    let revision = effects
+        .iter()
+        .find_map(|e| if let Effect::Check(ask) = e { Some(ask.revision) } else { None })
+        .expect("a check");
     let (state, _) = update(&state, Event::Answered(revision - 1, Box::new(old.clone()), String::new()));
     assert!(state.fresh().is_none(), "an answer that comes late is dropped");
     let (state, _) = update(&state, Event::Answered(revision, Box::new(old), String::new()));

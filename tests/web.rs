@@ -58,8 +58,9 @@ fn a_truss_that_cannot_be_read_is_refused_in_words() {
 
 #[wasm_bindgen_test]
 fn the_worker_answers_nothing_to_bytes_that_are_no_truss() {
-    assert!(page::web::worker_message(vec![255; 9]).is_empty());
-    assert!(page::web::worker_message(Vec::new()).is_empty());
+    let tell = js_sys::Function::new_no_args("");
+    assert!(page::web::worker_message(vec![255; 9], &tell).is_empty());
+    assert!(page::web::worker_message(Vec::new(), &tell).is_empty());
 }
 
 #[wasm_bindgen_test]

@@ -163,6 +163,17 @@ pub struct CloseAnswer {
     pub suspects: Vec<Suspect>,
     /// What the places give for each figure, in the order of the truss.
     pub readings: Vec<Reading>,
+    /// Where no single figure is to blame: the two that together are, each with the layout without both; else empty.
+    pub pair: Vec<Suspect>,
+    /// Where no layout and no suspect was found: the places that come nearest to the figures, to be looked at only.
+    pub nearest: Option<Vec<Point>>,
+}
+
+impl CloseAnswer {
+    /// The figures that may be to blame: the suspects, else the two that are together.
+    pub fn blamed(&self) -> &[Suspect] {
+        if self.suspects.is_empty() { &self.pair } else { &self.suspects }
+    }
 }
 
 /// A figure whose removal alone lets all the others close.

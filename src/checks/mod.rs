@@ -31,4 +31,4 @@ pub use close::{Effort, Progress, Stage, close, close_watched};
 pub use findings::{Evidence, Finding, Law, Level, Mend, Question, Rule};
 pub use limits::Limits;
 pub use placed::{Placed, Places};
-pub use report::report;
+pub use report::{report, report_watched};

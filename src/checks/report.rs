@@ -2,7 +2,7 @@
 
 use super::answers::{Answers, CloseAnswer, Report};
 use super::chains::chains;
-use super::close::{Effort, close};
+use super::close::{Effort, Progress, close_watched};
 use super::findings::Finding;
 use super::frame::Frame;
 use super::limits::Limits;
@@ -17,10 +17,16 @@ use crate::truss::{JointId, Truss};
 /// there is one, of the joints as given otherwise. The truss is taken to have no [`Truss::problems`]; one that has them
 /// may be answered wrongly, and one that names a joint that is not there gets the report of an empty sheet.
 pub fn report(truss: &Truss, limits: &Limits) -> Report {
+    report_watched(truss, limits, &mut |_| true)
+}
+
+/// The same, telling how far the search for a layout, a proof and suspects is; when `watch` answers false that search stops,
+/// and what it had not settled is answered `not settled`.
+pub fn report_watched(truss: &Truss, limits: &Limits, watch: &mut dyn FnMut(Progress) -> bool) -> Report {
     if !is_whole(truss) {
         return report(&Truss::default(), limits);
     }
-    let (close, mut found) = close(truss, &Effort::default());
+    let (close, mut found) = close_watched(truss, &Effort::default(), watch);
     let placed = place(truss, &close);
     let frame = Frame::new(&placed, limits);
     let chains = chains(&frame);

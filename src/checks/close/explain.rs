@@ -273,7 +273,7 @@ pub(crate) fn blamed(mut finding: Finding, truss: &Truss, blame: &Blame) -> Find
     let told = if blame.complete {
         "no single figure and no pair tried is to blame alone"
     } else {
-        "the search for the wrong figure reached its bound"
+        "the search for the wrong figure reached its bound, or was stopped"
     };
     finding.words(told)
 }

@@ -31,6 +31,7 @@ mod words;
 use super::{CloseAnswer, CloseState, Finding, Proof, Suspect};
 use crate::exact::{Interval, Point};
 use crate::truss::{Edit, FigureId, FigureValue, Truss};
+use serde::{Deserialize, Serialize};
 
 /// How much work may be spent; counts, so that the answer is the same on every machine.
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -54,7 +55,7 @@ impl Default for Effort {
 }
 
 /// How far the work has come.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize)]
 pub struct Progress {
     /// What is being done.
     pub stage: Stage,
@@ -64,8 +65,8 @@ pub struct Progress {
     pub of: usize,
 }
 
-/// What is being done.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+/// What is being done, in the order in which it is done.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Serialize, Deserialize)]
 pub enum Stage {
     /// A layout is being looked for.
     Layout,
@@ -107,6 +108,8 @@ fn answer(state: CloseState, proof: Proof, summary: impl Into<String>) -> CloseA
         free_joints: Vec::new(),
         suspects: Vec::new(),
         readings: Vec::new(),
+        pair: Vec::new(),
+        nearest: None,
     }
 }
 

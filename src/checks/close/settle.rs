@@ -181,8 +181,11 @@ fn open(
             found
         }
     };
-    let places = blame.singles.first().map_or_else(|| nearest_places(problem, trial), |a| a.suspect.layout.clone());
+    let proved = blame.singles.first().or_else(|| blame.pairs.first().map(|pair| &pair[0]));
+    let places = proved.map_or_else(|| nearest_places(problem, start), |accused| accused.suspect.layout.clone());
     found.readings = readings::readings(truss, &places);
+    found.nearest = proved.is_none().then_some(places);
+    found.pair = blame.pairs.into_iter().next().into_iter().flatten().map(|accused| accused.suspect).collect();
     found.suspects = blame.singles.into_iter().map(|accused| accused.suspect).collect();
     (found, findings)
 }
@@ -235,15 +238,15 @@ fn worst(problem: &Problem, trial: &Trial) -> Vec<(FigureId, Rational)> {
     })
 }
 
-/// The best places that floats found, to a sixteenth of the step; the sketch when there are none.
-fn nearest_places(problem: &Problem, trial: &Trial) -> Vec<Point> {
-    let rounded = trial.best.as_ref().and_then(|best| {
-        problem.with_base(&[], |base| {
-            let lattice = &problem.step / whole(16);
-            let round = |v: &Rational| Some(&lattice * Rational::from_integer(nearest_multiple(v, &lattice)?));
-            let unknowns: Option<Vec<Rational>> = base.model.exactly(&best.unknowns)?.iter().map(round).collect();
-            Some(base.model.places(&unknowns?))
-        })
+/// The adjusted places, to a sixteenth of the step; the sketch when they cannot be had. They have the least sum of misfits,
+/// so that few figures are off.
+fn nearest_places(problem: &Problem, adjusted: &[[f64; 2]]) -> Vec<Point> {
+    let rounded = problem.with_base(&[], |base| {
+        let lattice = &problem.step / whole(16);
+        let round = |v: &Rational| Some(&lattice * Rational::from_integer(nearest_multiple(v, &lattice)?));
+        let unknowns = base.model.unknowns_from(&base.network.offsets, adjusted);
+        let unknowns: Option<Vec<Rational>> = base.model.exactly(&unknowns)?.iter().map(round).collect();
+        Some(base.model.places(&unknowns?))
     });
     rounded.unwrap_or_else(|| problem.truss.points())
 }

@@ -3,7 +3,7 @@
 use super::camera::Pixel;
 use super::cells::Cell;
 use super::model::{Book, Thing};
-use crate::checks::{Question, Report};
+use crate::checks::{Limits, Progress, Question, Report, Stage};
 use crate::truss::{Role, Truss};
 use std::rc::Rc;
 
@@ -30,6 +30,10 @@ pub enum Event {
     StartAsked,
     /// Answers came back for a revision.
     Answered(u64, Box<Report>, String),
+    /// The work on a revision has come so far.
+    Progressed(u64, Progress),
+    /// The search that is under way was to be stopped.
+    StopAsked,
     /// The checks failed to run.
     CheckFailed(String),
     /// A question was chosen.
@@ -182,11 +186,24 @@ pub struct KeyPress {
     pub held: Modifiers,
 }
 
+/// What is to be worked out.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Ask {
+    /// The revision of the truss; the answers come back with it.
+    pub revision: u64,
+    /// The truss.
+    pub truss: Rc<Truss>,
+    /// The limits to go by.
+    pub limits: Rc<Limits>,
+    /// Where the search for a layout, a proof and suspects is to stop; `None` lets it come to its end.
+    pub until: Option<Stage>,
+}
+
 /// Something the page asks of the browser.
 #[derive(Clone, Debug, PartialEq)]
 pub enum Effect {
-    /// Work out the answers for this revision of the truss.
-    Check(u64, Rc<Truss>),
+    /// Work out answers.
+    Check(Ask),
     /// Keep the work in this browser.
     Keep(Rc<Truss>),
     /// Save a file.

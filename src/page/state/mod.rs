@@ -28,7 +28,7 @@ pub mod view;
 pub use camera::{Camera, Pixel, Place};
 pub use cells::{Cell, Column, Row, understood};
 pub use checked::Checked;
-pub use event::{Button, Effect, Event, KeyPress, Modifiers, PointerAct};
+pub use event::{Ask, Button, Effect, Event, KeyPress, Modifiers, PointerAct};
 pub use files::DEMOS;
 pub use history::History;
 pub use keys::{KEYS, KeyHelp};

@@ -4,7 +4,7 @@ use super::camera::{Camera, Pixel, Place, place_of};
 use super::cells::Cell;
 use super::checked::Checked;
 use super::history::History;
-use crate::checks::{Places, Question};
+use crate::checks::{Limits, Places, Progress, Question};
 use crate::exact::Point;
 use crate::truss::{FigureId, JointId, MemberId, Selection, SupportId, Truss};
 use std::rc::Rc;
@@ -20,6 +20,10 @@ pub struct State {
     pub history: History,
     /// The last answers that came back, with the truss they are about.
     pub checked: Option<Rc<Checked>>,
+    /// How far the answers to the truss as it is now have come, when that takes long.
+    pub progress: Option<Progress>,
+    /// The limits that the checks go by.
+    pub limits: Rc<Limits>,
     /// Where the truss came from; `None` on the first screen.
     pub source: Option<Source>,
     /// The question whose evidence is shown.
@@ -98,6 +102,8 @@ pub enum Shown {
     Layout,
     /// The layout without one suspect, by its place among the suspects.
     Without(usize),
+    /// Where there is neither: the places that come nearest to the figures.
+    Nearest,
 }
 
 /// One thing on the drawing.
@@ -253,7 +259,8 @@ impl State {
         let layout = self.fresh().and_then(|checked| match self.shown {
             Shown::Sketch => None,
             Shown::Layout => Some(checked.report.points.clone()),
-            Shown::Without(index) => checked.report.answers.close.suspects.get(index).map(|s| s.layout.clone()),
+            Shown::Nearest => checked.report.answers.close.nearest.clone(),
+            Shown::Without(index) => checked.report.answers.close.blamed().get(index).map(|s| s.layout.clone()),
         });
         layout.filter(|points| points.len() == self.truss.joints.len()).unwrap_or_else(|| self.truss.points())
     }
@@ -281,6 +288,17 @@ impl State {
     /// True when the layout differs from the sketch, so that there is something to switch between.
     pub fn has_layout(&self) -> bool {
         self.fresh().is_some_and(|checked| checked.report.places == Places::Layout)
+    }
+
+    /// What the board can show beside the sketch: the layout, else the layout without the first suspect, else the places
+    /// that come nearest.
+    pub fn other_places(&self) -> Option<Shown> {
+        let close = &self.fresh()?.report.answers.close;
+        match () {
+            () if self.has_layout() => Some(Shown::Layout),
+            () if !close.blamed().is_empty() => Some(Shown::Without(0)),
+            () => close.nearest.as_ref().map(|_| Shown::Nearest),
+        }
     }
 
     /// True on the first screen.

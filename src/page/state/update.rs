@@ -3,7 +3,7 @@
 use super::camera::{Camera, Pixel};
 use super::cells::{Cell, edit_of, entry_edit};
 use super::checked::Checked;
-use super::event::{Effect, Event, KeyPress};
+use super::event::{Ask, Effect, Event, KeyPress};
 use super::model::{Book, Drag, Message, Pen, Refused, Shown, Source, State, Thing, Tone};
 use super::{board_events, draw, files, keys};
 use crate::checks::Report;
@@ -38,7 +38,11 @@ fn apply(state: &mut State, event: Event, effects: &mut Vec<Effect>) {
         ),
         Event::StartAsked => state.source = None,
         Event::Answered(revision, report, fingerprint) => answered(state, revision, *report, fingerprint),
-        Event::CheckFailed(why) => say(state, Tone::Refused, format!("the checks could not run: {why}")),
+        Event::Progressed(revision, progress) => {
+            state.progress = Some(progress).filter(|_| revision == state.revision && state.is_checking());
+        }
+        Event::StopAsked => stop_search(state, effects),
+        Event::CheckFailed(why) => check_failed(state, why),
         Event::QuestionChosen(question) => {
             state.question = question;
             state.open_finding = None;
@@ -140,8 +144,25 @@ fn after_change(state: &mut State, effects: &mut Vec<Effect>) {
 /// Asks for answers to the truss as it is now.
 pub(super) fn start_checks(state: &mut State, effects: &mut Vec<Effect>) {
     state.revision += 1;
-    effects.push(Effect::Check(state.revision, state.truss.clone()));
+    state.progress = None;
+    effects.push(Effect::Check(ask(state)));
     effects.push(Effect::SetTitle(state.truss.title.clone()));
+}
+
+fn ask(state: &State) -> Ask {
+    Ask { revision: state.revision, truss: state.truss.clone(), limits: state.limits.clone(), until: None }
+}
+
+/// What the search has come to is kept: it is asked for again, only so far.
+fn stop_search(state: &mut State, effects: &mut Vec<Effect>) {
+    if let Some(progress) = state.progress.take() {
+        effects.push(Effect::Check(Ask { until: Some(progress.stage), ..ask(state) }));
+    }
+}
+
+fn check_failed(state: &mut State, why: String) {
+    state.progress = None;
+    say(state, Tone::Refused, format!("the checks could not run: {why}"));
 }
 
 /// Drops whatever is selected or pointed at that is no longer there.
@@ -161,6 +182,7 @@ fn answered(state: &mut State, revision: u64, report: Report, fingerprint: Strin
     if revision != state.revision {
         return;
     }
+    state.progress = None;
     let findings = report.findings.len();
     state.checked = Some(Rc::new(Checked { truss: state.truss.clone(), report, fingerprint }));
     state.open_finding = state.open_finding.filter(|&index| index < findings);
@@ -206,8 +228,9 @@ fn resized(state: &mut State, width: f64, height: f64) {
 
 fn toggle_shown(state: &mut State) {
     state.shown = match state.shown {
-        Shown::Sketch => Shown::Layout,
-        Shown::Layout | Shown::Without(_) => Shown::Sketch,
+        Shown::Layout if !state.has_layout() => state.other_places().unwrap_or_default(),
+        Shown::Sketch => state.other_places().unwrap_or(Shown::Layout),
+        Shown::Layout | Shown::Without(_) | Shown::Nearest => Shown::Sketch,
     };
 }
 
@@ -245,7 +268,7 @@ fn take_mend(state: &mut State, index: usize, effects: &mut Vec<Effect>) {
 
 fn take_implied(state: &mut State, index: usize, effects: &mut Vec<Effect>) {
     let Some(checked) = state.fresh().cloned() else { return };
-    let Some(suspect) = checked.report.answers.close.suspects.get(index) else { return };
+    let Some(suspect) = checked.report.answers.close.blamed().get(index) else { return };
     let figure = checked.truss.figure(suspect.figure);
     match super::cells::figure_value(&state.truss, &figure.kind, &suspect.implied) {
         Ok(value) => {

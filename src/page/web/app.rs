@@ -111,7 +111,7 @@ impl Component for App {
                         selection={view::selection_view(state)}
                         pen={state.pen}
                         still={state.still}
-                        has_layout={state.has_layout()}
+                        has_layout={state.other_places().is_some()}
                         empty={state.truss.joints.is_empty()}
                         entry={state.entry.clone()}
                         entry_error={state.entry_error.clone()}
@@ -121,6 +121,7 @@ impl Component for App {
                 </main>
                 <Book view={view::book_view(state)} truss={state.truss.clone()} pointed={state.pointed} on={on.clone()} />
                 { for state.help.then(|| help(on)) }
+                { work(state, on) }
                 { message(state, on) }
                 { notice() }
                 <Sheet view={self.sheet()} />
@@ -181,6 +182,26 @@ fn message(state: &State, on: &Callback<PageEvent>) -> Html {
                 <p class={if message.tone == Tone::Refused { "message refused" } else { "message" }}>
                     <span>{ &message.text }</span>
                     <button class="quiet" onclick={close}>{ "Close" }</button>
+                </p>
+            }
+        </div>
+    }
+}
+
+/// The search that is under way, where it takes long, with a way to stop it.
+fn work(state: &State, on: &Callback<PageEvent>) -> Html {
+    let stop = on.reform(|_: MouseEvent| PageEvent::StopAsked);
+    html! {
+        <div class="work-line" role="status">
+            if let Some(work) = view::work_view(state) {
+                <p class="message">
+                    <span>{ work.words }</span>
+                    if let Some((done, of)) = work.steps {
+                        <progress value={done.to_string()} max={of.to_string()} aria-label="figures tried" />
+                    } else {
+                        <progress aria-label="working" />
+                    }
+                    <button class="quiet" id="stop" onclick={stop}>{ "Stop" }</button>
                 </p>
             }
         </div>

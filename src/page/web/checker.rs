@@ -1,8 +1,7 @@
 //! Answers off the main thread: one worker, one question at a time, the newest truss first.
 
-use super::worker::{Answer, answer};
-use crate::page::state::Event as PageEvent;
-use crate::truss::Truss;
+use super::worker::{Answer, Asked, answer, told};
+use crate::page::state::{Ask, Event as PageEvent};
 use gloo::events::EventListener;
 use js_sys::{Function, Object, Reflect};
 use std::cell::RefCell;
@@ -23,7 +22,7 @@ struct Inner {
     /// The revision that is being worked on.
     busy: Option<u64>,
     /// The revision that is to be worked on next.
-    next: Option<(u64, Rc<Truss>)>,
+    next: Option<Ask>,
 }
 
 impl Checker {
@@ -32,10 +31,10 @@ impl Checker {
     }
 
     /// Asks for answers to a revision. An older one that is still being worked on is given up.
-    pub(super) fn ask(&self, revision: u64, truss: Rc<Truss>) {
+    pub(super) fn ask(&self, ask: Ask) {
         {
             let mut inner = self.inner.borrow_mut();
-            inner.next = Some((revision, truss));
+            inner.next = Some(ask);
             let was_busy = inner.busy.take().is_some();
             if let Some((worker, _)) = inner.worker.take_if(|_| was_busy) {
                 worker.terminate();
@@ -45,18 +44,19 @@ impl Checker {
     }
 
     fn send(&self) {
-        let Some((revision, truss)) = self.inner.borrow_mut().next.take() else { return };
-        if self.worker_ready() && self.post(revision, &truss) {
+        let Some(Ask { revision, truss, limits, until }) = self.inner.borrow_mut().next.take() else { return };
+        let asked = Asked { truss, limits, until };
+        if self.worker_ready() && self.post(revision, &asked) {
             self.inner.borrow_mut().busy = Some(revision);
         } else {
-            let Answer { report, fingerprint } = answer(&truss);
+            let Answer { report, fingerprint } = answer(&asked, &mut |_| ());
             let on = self.inner.borrow().on.clone();
             on.emit(PageEvent::Answered(revision, Box::new(report), fingerprint));
         }
     }
 
-    fn post(&self, revision: u64, truss: &Truss) -> bool {
-        let Ok(bytes) = postcard::to_allocvec(truss) else { return false };
+    fn post(&self, revision: u64, asked: &Asked) -> bool {
+        let Ok(bytes) = postcard::to_allocvec(asked) else { return false };
         let message = Object::new();
         let set = |key: &str, value: JsValue| Reflect::set(&message, &key.into(), &value).is_ok();
         if !set("id", JsValue::from_f64(revision as f64))
@@ -87,6 +87,14 @@ impl Checker {
         let Some(data) = event.dyn_ref::<MessageEvent>().map(MessageEvent::data) else { return };
         let get = |key: &str| Reflect::get(&data, &key.into()).ok();
         let Some(revision) = get("id").and_then(|id| id.as_f64()).map(|id| id as u64) else { return };
+        if let Some(numbers) = get("progress").and_then(|numbers| numbers.dyn_into::<js_sys::Array>().ok()) {
+            let number = |index| numbers.get(index).as_f64().unwrap_or(0.0);
+            if let Some(progress) = told([0, 1, 2].map(number)) {
+                let on = self.inner.borrow().on.clone();
+                on.emit(PageEvent::Progressed(revision, progress));
+            }
+            return;
+        }
         let read = get("data")
             .and_then(|bytes| bytes.dyn_into::<js_sys::Uint8Array>().ok())
             .and_then(|bytes| postcard::from_bytes(&bytes.to_vec()).ok());

@@ -35,7 +35,7 @@ impl Shell {
 
     pub(super) fn run(&mut self, effect: Effect) {
         match effect {
-            Effect::Check(revision, truss) => self.checker.ask(revision, truss),
+            Effect::Check(ask) => self.checker.ask(ask),
             Effect::Keep(truss) => self.keep(truss),
             Effect::Save { name, text } => save(&name, &text),
             Effect::SetFragment(link) => set_fragment(&link),

@@ -3,11 +3,22 @@
 //! The built page runs a second instance of the same module in a web worker. The script around it (`worker.js` of the
 //! native program) hands what each message carries to [`worker_message`] and posts what comes back under the message's id.
 
-use crate::checks::{Report, report};
+use crate::checks::{Limits, Progress, Report, Stage, report_watched};
 use crate::exchange::fingerprint;
 use crate::truss::Truss;
+use js_sys::Function;
 use serde::{Deserialize, Serialize};
+use std::rc::Rc;
+use wasm_bindgen::JsValue;
 use wasm_bindgen::prelude::wasm_bindgen;
+
+/// What the worker is asked.
+#[derive(Serialize, Deserialize)]
+pub(super) struct Asked {
+    pub(super) truss: Rc<Truss>,
+    pub(super) limits: Rc<Limits>,
+    pub(super) until: Option<Stage>,
+}
 
 /// What the worker answers: the report and the fingerprint of the truss it is about.
 #[derive(Serialize, Deserialize)]
@@ -16,17 +27,33 @@ pub(super) struct Answer {
     pub(super) fingerprint: String,
 }
 
-/// Works out the answers for a truss.
-pub(super) fn answer(truss: &Truss) -> Answer {
-    Answer { report: report(truss, &Default::default()), fingerprint: fingerprint(truss) }
+/// Works out the answers, telling how far it is.
+pub(super) fn answer(asked: &Asked, tell: &mut dyn FnMut(Progress)) -> Answer {
+    let mut watch = |progress: Progress| {
+        tell(progress);
+        asked.until.is_none_or(|until| progress.stage < until)
+    };
+    Answer { report: report_watched(&asked.truss, &asked.limits, &mut watch), fingerprint: fingerprint(&asked.truss) }
 }
 
-/// Answers one message in the worker: the bytes of a truss in, the bytes of its answers out.
+/// Answers one message in the worker: the bytes of what is asked in, the bytes of the answers out. Meanwhile `tell` is
+/// called with how far it is: the number of the stage, the steps done and the steps there are.
 ///
-/// Both sides are this same program, so the bytes need no version; bytes that are no truss get an empty answer.
+/// Both sides are this same program, so the bytes need no version; bytes that ask nothing get an empty answer.
 #[wasm_bindgen]
 #[must_use]
-pub fn worker_message(truss: Vec<u8>) -> Vec<u8> {
-    let truss: Option<Truss> = postcard::from_bytes(&truss).ok();
-    truss.and_then(|truss| postcard::to_allocvec(&answer(&truss)).ok()).unwrap_or_default()
+pub fn worker_message(asked: Vec<u8>, tell: &Function) -> Vec<u8> {
+    let mut tell = |Progress { stage, done, of }: Progress| {
+        let [stage, done, of] = [stage as usize, done, of].map(|n| JsValue::from_f64(n as f64));
+        drop(tell.call3(&JsValue::NULL, &stage, &done, &of));
+    };
+    let asked: Option<Asked> = postcard::from_bytes(&asked).ok();
+    asked.and_then(|asked| postcard::to_allocvec(&answer(&asked, &mut tell)).ok()).unwrap_or_default()
+}
+
+/// How far the work is, from the numbers that [`worker_message`] tells.
+pub(super) fn told(numbers: [f64; 3]) -> Option<Progress> {
+    let [stage, done, of] = numbers.map(|n| n as usize);
+    let stage = *[Stage::Layout, Stage::Exclusion, Stage::Suspects].get(stage)?;
+    Some(Progress { stage, done, of })
 }

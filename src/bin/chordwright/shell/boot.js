@@ -1,7 +1,8 @@
 // Starts the page: unpacks the program that this file carries, compiles it and runs it.
 //
 // It also gives the program its worker: `chordwrightWorker()` returns a new Worker that holds the same program. Post it
-// `{ id, data }`; it calls the program's `worker_message(data)` and posts `{ id, data }` back with the answer, or
+// `{ id, data }`; it calls the program's `worker_message(data, tell)` and posts `{ id, data }` back with the answer, before
+// it now and then `{ id, progress: [stage, done, of] }` when that takes long, or
 // `{ id, error }` if the program stopped, after which that worker is finished and a new one is to be made. Messages are
 // answered in the order in which they came. To give up an answer, `terminate()` the worker.
 {

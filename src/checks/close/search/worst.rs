@@ -43,8 +43,7 @@ impl Network {
             let lines = self.linearised(&best.unknowns);
             let optimum = self.overshoot_programme(&lines, reach, keep).solve()?;
             let next: Vec<f64> = best.unknowns.iter().zip(&optimum.changes).map(|(u, d)| u + d).collect();
-            let overshoot =
-                if allowed(&next) { self.worst(&self.linearised(&next), keep) } else { f64::INFINITY };
+            let overshoot = if allowed(&next) { self.worst(&self.linearised(&next), keep) } else { f64::INFINITY };
             let (expected, gained) = (best.overshoot - optimum.overshoot, best.overshoot - overshoot);
             let moved = optimum.changes.iter().fold(0.0f64, |a, d| a.max(d.abs()));
             if best.multipliers.is_empty() || gained >= 0.0 {

@@ -1,7 +1,8 @@
 //! The five answers, always in sight.
 
 use crate::checks::{
-    ClearState, CloseAnswer, CloseState, Level, Places, Question, Report, StandsAnswer, StandsState, TrueState,
+    ClearState, CloseAnswer, CloseState, Level, Places, Progress, Question, Report, Stage, StandsAnswer, StandsState,
+    TrueState,
 };
 use crate::measure::pretty;
 use crate::page::state::State;
@@ -76,6 +77,26 @@ pub fn answer_tiles(state: &State) -> Vec<AnswerTile> {
     Question::ALL.into_iter().map(|question| tile(state, question)).collect()
 }
 
+/// How far a search is that takes long.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct WorkView {
+    /// What is being done, in words.
+    pub words: String,
+    /// Steps done, and steps there are; `None` where they cannot be counted.
+    pub steps: Option<(usize, usize)>,
+}
+
+/// How far the search is, while one is under way that takes long.
+pub fn work_view(state: &State) -> Option<WorkView> {
+    let Progress { stage, done, of } = state.progress?;
+    let words = match stage {
+        Stage::Layout => "Looking for a layout".to_string(),
+        Stage::Exclusion => "Looking for a proof that there is no layout".to_string(),
+        Stage::Suspects => format!("Leaving out figures one by one: {done} of {of}"),
+    };
+    Some(WorkView { words, steps: (stage == Stage::Suspects).then_some((done, of)) })
+}
+
 fn tile(state: &State, question: Question) -> AnswerTile {
     let chosen = state.question == question;
     let stale = state.fresh().is_none();
@@ -97,7 +118,10 @@ fn tile(state: &State, question: Question) -> AnswerTile {
 
 /// What stands under the answer to the first question: short, since its evidence is beside it.
 fn close_detail(truss: &Truss, close: &CloseAnswer) -> String {
-    match close.suspects.as_slice() {
+    match close.blamed() {
+        [a, b] if close.suspects.is_empty() => {
+            format!("proved; {} and {} together", truss.figure(a.figure).mark, truss.figure(b.figure).mark)
+        }
         [] => close.summary.clone(),
         [only] => format!("proved; {} should read {}", truss.figure(only.figure).mark, only.implied),
         several => format!("proved; {} suspects", several.len()),

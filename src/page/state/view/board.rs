@@ -2,6 +2,7 @@
 
 use super::dimensions::{draw_corners, draw_lengths, draw_strings};
 use super::labels::{Anchor, LabelView, Labels};
+use super::misfits::{draw_misfits, times};
 use super::path::{PathText, PathView, tenths};
 use crate::checks::{Finding, Level, Question, Rule};
 use crate::exact::order;
@@ -79,8 +80,8 @@ fn doubtful(state: &State) -> HashSet<FigureId> {
     let Some(checked) = state.fresh() else { return HashSet::new() };
     let close = &checked.report.answers.close;
     let failing = close.readings.iter().enumerate().filter(|(_, r)| !r.holds).map(|(index, _)| FigureId::new(index));
-    let suspects = close.suspects.iter().map(|suspect| suspect.figure);
-    if close.suspects.is_empty() { failing.collect() } else { suspects.collect() }
+    let suspects = close.blamed().iter().map(|suspect| suspect.figure);
+    if close.blamed().is_empty() { failing.collect() } else { suspects.collect() }
 }
 
 /// The findings that the board shows: the open one, else all faults and cautions of the chosen question.
@@ -93,7 +94,7 @@ fn shown_findings(state: &State) -> Vec<&Finding> {
             .iter()
             .filter(|f| f.rule.question() == state.question && f.level != Level::Note)
             // Where figures are under suspicion, they are what is shown.
-            .filter(|f| f.rule != Rule::Excluded || checked.report.answers.close.suspects.is_empty())
+            .filter(|f| f.rule != Rule::Excluded || checked.report.answers.close.blamed().is_empty())
             .take(200)
             .collect(),
     }
@@ -115,26 +116,42 @@ pub fn drawing_view(state: &State) -> DrawingView {
     draw_marks(&board, &mut labels);
     draw_lengths(&board, &mut labels, &mut paths);
     draw_corners(&board, &mut labels, &mut paths);
+    draw_misfits(&board, &mut labels, &mut paths);
     DrawingView {
         paths: strings.into_iter().chain(paths.into_iter().flatten()).collect(),
         labels: labels.into_views(),
-        caption: caption(state),
+        caption: caption(&board),
         motion: motion(&board),
         sentence: sentence(state),
     }
 }
 
-fn caption(state: &State) -> String {
-    if !state.has_layout() && !matches!(state.shown, Shown::Without(_)) {
+/// What is shown, and how much larger misfits are drawn.
+fn caption(board: &Board) -> String {
+    let places = places_caption(board.state);
+    match times(board).filter(|times| *times > 1) {
+        Some(times) if places.is_empty() => format!("Misfits drawn {times} times as large"),
+        Some(times) => format!("{places}, misfits {times} times as large"),
+        None => places,
+    }
+}
+
+fn places_caption(state: &State) -> String {
+    if state.other_places().is_none() {
         return String::new();
     }
     match state.shown {
         Shown::Sketch => "Showing your sketch".into(),
+        Shown::Layout if !state.has_layout() => "Showing your sketch".into(),
         Shown::Layout => layout_caption(state),
+        Shown::Nearest => "Showing the nearest places".into(),
         Shown::Without(index) => {
-            let suspect = state.fresh().and_then(|checked| checked.report.answers.close.suspects.get(index));
+            let suspect = state.fresh().and_then(|checked| checked.report.answers.close.blamed().get(index));
             suspect.map_or_else(String::new, |s| {
-                format!("Showing the layout without {}", state.truss.figure(s.figure).mark)
+                let others = state.fresh().map(|checked| checked.report.answers.close.pair.as_slice());
+                let both = others.filter(|pair| pair.iter().any(|other| other == s)).unwrap_or(std::slice::from_ref(s));
+                let marks: Vec<&str> = both.iter().map(|s| state.truss.figure(s.figure).mark.as_str()).collect();
+                format!("Showing the layout without {}", marks.join(" and "))
             })
         }
     }
@@ -215,7 +232,7 @@ fn light_suspect(board: &Board, lines: &mut PathText, marks: &mut PathText) {
     else {
         return;
     };
-    let suspects = &checked.report.answers.close.suspects;
+    let suspects = checked.report.answers.close.blamed();
     let Some(suspect) = suspects.get(state.open_suspect.unwrap_or(0)) else { return };
     let joints = board.truss.figure(suspect.figure).kind.joints();
     for &joint in &joints {

@@ -218,7 +218,7 @@ impl Maker<'_> {
         let (row, mark) = (Row::Figure(id), &figure.mark);
         let close = self.checked.map(|checked| &checked.report.answers.close);
         let reading = close.and_then(|close| close.readings.get(id.index()));
-        let suspect = close.is_some_and(|close| close.suspects.iter().any(|suspect| suspect.figure == id));
+        let suspect = close.is_some_and(|close| close.blamed().iter().any(|suspect| suspect.figure == id));
         let value = match figure.kind.value_text() {
             Some(text) => self.entered(row, Column::Value, text, CellKind::Value, format!("value of {mark}")),
             None => self.shown("–".into(), CellKind::Number),

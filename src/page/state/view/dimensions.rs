@@ -95,7 +95,7 @@ impl Lines {
 /// Places the value of a figure; a suspect is struck through, with what it should read beside it.
 fn place_value(board: &Board, labels: &mut Labels, id: FigureId, label: LabelView) {
     let implied = board.state.fresh().and_then(|checked| {
-        let suspects = &checked.report.answers.close.suspects;
+        let suspects = checked.report.answers.close.blamed();
         suspects.iter().find(|suspect| suspect.figure == id).map(|suspect| pretty(&suspect.implied))
     });
     match implied {

@@ -109,16 +109,12 @@ pub fn evidence_view(state: &State) -> Option<EvidenceView> {
     let checked = state.checked.as_ref()?;
     let (truss, report, question) = (&*checked.truss, &checked.report, state.question);
     let of_question = || report.findings.iter().enumerate().filter(|(_, f)| f.rule.question() == question);
-    let suspects = if question == Question::Close { report.answers.close.suspects.as_slice() } else { &[] };
+    let suspects = if question == Question::Close { report.answers.close.blamed() } else { &[] };
     Some(EvidenceView {
         question,
         sentence: pretty(&sentence(checked, question)),
         numbers: numbers(checked, question).into_iter().map(|(name, value)| (name, pretty(&value))).collect(),
-        suspects: suspects
-            .iter()
-            .enumerate()
-            .map(|item| suspect_view(state, truss, item, suspects.len() == 1))
-            .collect(),
+        suspects: suspects.iter().enumerate().map(|item| suspect_view(state, truss, item, suspects)).collect(),
         findings: of_question().take(MOST).map(|(index, f)| finding_view(state, truss, index, f)).collect(),
         more: of_question().count().saturating_sub(MOST),
         has_layout: state.has_layout(),
@@ -127,7 +123,15 @@ pub fn evidence_view(state: &State) -> Option<EvidenceView> {
     })
 }
 
-fn suspect_view(state: &State, truss: &Truss, (index, suspect): (usize, &Suspect), is_only: bool) -> SuspectView {
+fn suspect_view(state: &State, truss: &Truss, (index, suspect): (usize, &Suspect), blamed: &[Suspect]) -> SuspectView {
+    let is_pair = state.checked.as_ref().is_some_and(|checked| checked.report.answers.close.suspects.is_empty());
+    let blame = match blamed {
+        [_] => "cannot be right".to_string(),
+        [a, b] if is_pair => {
+            format!("may be wrong, together with {}", truss.figure(if index == 0 { b } else { a }.figure).mark)
+        }
+        _ => "may be wrong".into(),
+    };
     let figure = truss.figure(suspect.figure);
     let sheet = Sheet::of(truss.unit, &truss.step.value);
     let is_length = matches!(figure.kind.name(), "length" | "run" | "rise");
@@ -137,7 +141,7 @@ fn suspect_view(state: &State, truss: &Truss, (index, suspect): (usize, &Suspect
     SuspectView {
         index,
         mark: figure.mark.clone(),
-        words: format!("Figure {} {}", figure.mark, if is_only { "cannot be right" } else { "may be wrong" }),
+        words: format!("Figure {} {blame}", figure.mark),
         thing: Thing::Figure(suspect.figure),
         between: marks(truss, &figure.kind.joints()),
         printed: pretty(&figure.kind.value_text().unwrap_or_else(|| figure.kind.name().into())),
@@ -247,6 +251,9 @@ fn close_sentence(report: &Report, figures: usize) -> String {
     let close = &report.answers.close;
     let all = if figures == 1 { "the one figure".into() } else { format!("all {figures} figures") };
     match (close.state, close.suspects.len()) {
+        (CloseState::DoesNotClose, 0) if !close.pair.is_empty() => {
+            format!("No truss can have {all}. No single figure is to blame; two together may be.")
+        }
         (CloseState::Closes, _) if report.places == Places::Set => format!("The set joints agree with {all}."),
         (CloseState::Closes, _) => format!("A layout agrees with {all}; every one was checked exactly."),
         (CloseState::DoesNotClose, 0) => format!("No truss can have {all}."),

@@ -6,11 +6,12 @@ mod book;
 mod dimensions;
 mod evidence;
 mod labels;
+mod misfits;
 mod overlay;
 mod path;
 mod sheet;
 
-pub use answers::{AnswerTile, Sign, answer_tiles};
+pub use answers::{AnswerTile, Sign, WorkView, answer_tiles, work_view};
 pub use board::{DrawingView, Turned, drawing_view};
 pub use book::{BookView, CellKind, CellView, PAGE_ROWS, RowView, book_view, column_titles};
 pub use evidence::{EvidenceLine, EvidenceView, FindingView, MendView, SuspectView, evidence_view};
