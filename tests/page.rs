@@ -1,7 +1,8 @@
 //! The page's state, driven as the browser drives it: events in, state and effects out.
 
-use chordwright::checks::report;
+use chordwright::checks::{Progress, Question, Stage, report};
 use chordwright::exact::{Point, ratio, whole};
+use chordwright::page::state::view::{drawing_view, evidence_view, work_view};
 use chordwright::page::state::{
     Book, Button, Cell, Column, Effect, Event, KeyPress, Modifiers, Pen, Pixel, PointerAct, Row, State, Thing, Tone,
     update,
@@ -315,4 +316,63 @@ fn no_key_makes_the_page_panic_in_any_state() {
         chordwright::page::state::view::overlay_view(&page.state);
         chordwright::page::state::view::book_view(&page.state);
     }
+}
+
+#[test]
+fn a_long_search_tells_how_far_it_is_and_is_stopped_where_it_is() {
+    let mut page = Page::new();
+    let (state, _) = update(&page.state, Event::DemoChosen(1));
+    page.state = state;
+    let progress = Progress { stage: Stage::Suspects, done: 3, of: 12 };
+    let old = page.state.revision - 1;
+    assert_eq!(update(&page.state, Event::Progressed(old, progress)).0.progress, None, "an older search says nothing");
+    let (telling, _) = update(&page.state, Event::Progressed(page.state.revision, progress));
+    let words = work_view(&telling).map(|work| (work.words, work.steps));
+    assert_eq!(words, Some(("Leaving out figures one by one: 3 of 12".into(), Some((3, 12)))));
+    let (stopped, effects) = update(&telling, Event::StopAsked);
+    let until = effects.iter().find_map(|e| if let Effect::Check(ask) = e { Some(ask.until) } else { None });
+    assert_eq!((until, work_view(&stopped)), (Some(Some(Stage::Suspects)), None), "it is asked again, only so far");
+    assert_eq!(update(&stopped, Event::StopAsked).1, vec![], "there is nothing more to stop");
+}
+
+/// The first issue of the boathouse roof, whose f34 is a foot too long, with a second slip.
+fn two_slips() -> Page {
+    let mut page = Page::new();
+    page.send(Event::DemoChosen(1));
+    page.entry("L0 L4 19'-0\"");
+    page
+}
+
+#[test]
+fn two_wrong_figures_are_shown_together_with_what_they_should_read() {
+    let mut page = two_slips();
+    let evidence = evidence_view(&page.state).expect("evidence");
+    let told: Vec<(String, String)> = evidence.suspects.iter().map(|s| (s.mark.clone(), s.implied.clone())).collect();
+    assert_eq!(told, [("f34".into(), "7′-0 7/8″".into()), ("f40".into(), "20′-0″".into())]);
+    page.key("k");
+    let drawing = drawing_view(&page.state);
+    assert!(drawing.caption.starts_with("Showing the layout without f34 and f40"), "{}", drawing.caption);
+    assert_eq!(drawing.labels.iter().filter(|label| label.class == "label figure struck").count(), 2);
+    page.send(Event::ImpliedTaken(1));
+    let close = &page.state.fresh().expect("answers").report.answers.close;
+    assert_eq!(close.suspects.len(), 1, "the other is then to blame alone");
+}
+
+#[test]
+fn a_misfit_is_drawn_large_enough_to_see() {
+    let mut page = Page::new();
+    page.send(Event::DemoChosen(0));
+    assert!(!drawing_view(&page.state).paths.iter().any(|path| path.class == "misfit"), "all figures agree");
+    page.entry("L0 U4 21'-6 7/8\"");
+    let drawing = drawing_view(&page.state);
+    assert!(drawing.caption.contains("times as large"), "a sixteenth cannot be seen otherwise: {}", drawing.caption);
+    let path = drawing.paths.iter().find(|path| path.class == "misfit").expect("a misfit is drawn");
+    let numbers: Vec<f64> = path.d.split(['M', 'L', ' ']).filter_map(|part| part.parse().ok()).collect();
+    let length = f64::hypot(numbers[2] - numbers[0], numbers[3] - numbers[1]);
+    assert!((12.0..=36.5).contains(&length), "{length} pixels: {}", path.d);
+    page.send(Event::QuestionChosen(Question::Cut));
+    assert!(
+        !drawing_view(&page.state).paths.iter().any(|path| path.class == "misfit"),
+        "it belongs to the first question"
+    );
 }

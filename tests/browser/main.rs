@@ -7,6 +7,9 @@
 
 #![cfg(not(target_arch = "wasm32"))]
 
+#[path = "../close_help/mod.rs"]
+mod close_help;
+mod long_work;
 mod main_path;
 mod shell;
 mod support;
