@@ -393,3 +393,25 @@ fn the_program_tells_a_file_that_is_not_there_or_is_too_large() {
     assert_eq!(told[1], format!("{large}: the file has 16777217 bytes; the limit is 16 MiB of text"));
     std::fs::remove_file(large).expect("removed");
 }
+
+#[test]
+fn limits_are_given_with_the_command_and_refused_with_what_was_expected() {
+    let run = |arguments: &[&str]| {
+        let arguments: Vec<String> = arguments.iter().map(ToString::to_string).collect();
+        let file = include_bytes!("../demo/boathouse-roof.truss.json").to_vec();
+        run_report(&arguments, |_| Ok(file.clone()))
+    };
+    let tight = |outcome: &Outcome| outcome.out.matches("leave").count();
+    let (usual, strict) = (run(&["roof"]), run(&["roof", "--tight", "1/2"]));
+    assert_eq!((usual.status, strict.err.as_str()), (0, ""));
+    assert!(tight(&strict) > tight(&usual), "{}", strict.out);
+    assert!(run(&["--piece", "7'-6\"", "roof"]).out.contains("more than 7'-6\""));
+    for (arguments, error) in [
+        (vec!["roof", "--near"], "--near expects a value"),
+        (vec!["roof", "--near", "many"], "--near: `many` is not a number of steps; expected 1 to 1000"),
+        (vec!["roof", "--tight", "2"], "--tight: `2` is not a spread; expected 0 to 1 (1/4 is 30 degrees)"),
+    ] {
+        let outcome = run(&arguments);
+        assert_eq!((outcome.status, outcome.err), (2, format!("chordwright report: {error}\n")));
+    }
+}

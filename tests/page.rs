@@ -1,6 +1,6 @@
 //! The page's state, driven as the browser drives it: events in, state and effects out.
 
-use chordwright::checks::{Progress, Question, Stage, report};
+use chordwright::checks::{Progress, Question, Rule, Stage, report};
 use chordwright::exact::{Point, ratio, whole};
 use chordwright::page::state::view::{drawing_view, evidence_view, work_view};
 use chordwright::page::state::{
@@ -375,4 +375,33 @@ fn a_misfit_is_drawn_large_enough_to_see() {
         !drawing_view(&page.state).paths.iter().any(|path| path.class == "misfit"),
         "it belongs to the first question"
     );
+}
+
+#[test]
+fn a_limit_is_changed_where_its_effect_is_seen_and_a_wrong_one_is_refused_there() {
+    let mut page = Page::new();
+    page.send(Event::DemoChosen(0)).send(Event::QuestionChosen(Question::Clear));
+    let tight = |page: &Page| {
+        let findings = &page.state.fresh().expect("answers").report.findings;
+        findings.iter().filter(|finding| finding.rule == Rule::TightSpread).count()
+    };
+    let limit = |page: &Page| evidence_view(&page.state).expect("evidence").limits[0].clone();
+    let (before, cell) = (tight(&page), limit(&page).cell.cell.expect("it can be changed"));
+    assert_eq!((limit(&page).cell.text.as_str(), limit(&page).means.as_str()), ("1/4", "30.0°"));
+    assert!(limit(&page).source.contains("EN 1993-1-8"));
+    page.send(Event::CellEntered(cell, "1/2".into()));
+    assert!(tight(&page) > before, "more is tight below 45 degrees");
+    let kept = page
+        .effects
+        .iter()
+        .rev()
+        .find_map(|e| if let Effect::KeepLimits(text) = e { Some(text.clone()) } else { None });
+    let mut other = Page::new();
+    other.send(Event::LimitsFound(kept.expect("it is kept")));
+    assert_eq!(other.state.limits, page.state.limits);
+    other.send(Event::LimitsFound("{\"near_steps\": -1}".into()));
+    assert_eq!(*other.state.limits, chordwright::checks::Limits::default(), "what cannot be read is not taken");
+    page.send(Event::CellEntered(cell, "7/4".into()));
+    assert!(limit(&page).cell.error.contains("expected 0 to 1"), "{}", limit(&page).cell.error);
+    assert_eq!(limit(&page).cell.text, "7/4", "what was typed is kept");
 }

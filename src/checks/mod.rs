@@ -29,6 +29,6 @@ pub use answers::{
 };
 pub use close::{Effort, Progress, Stage, close, close_watched};
 pub use findings::{Evidence, Finding, Law, Level, Mend, Question, Rule};
-pub use limits::Limits;
+pub use limits::{Adjustable, Limits};
 pub use placed::{Placed, Places};
 pub use report::{report, report_watched};

@@ -7,9 +7,12 @@
 
 #![cfg(not(target_arch = "wasm32"))]
 
+mod big;
 #[path = "../close_help/mod.rs"]
 mod close_help;
 mod long_work;
 mod main_path;
 mod shell;
 mod support;
+#[path = "../trusses/mod.rs"]
+mod trusses;

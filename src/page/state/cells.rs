@@ -1,6 +1,7 @@
 //! Entries in the tables: where they are, what they mean while they are typed, and the edit they make.
 
 use super::entry::{read_figures, read_joint_line, read_member_line, read_support_line};
+use crate::checks::Adjustable;
 use crate::exact::Rational;
 use crate::measure::{Sheet, Unit, Written, parse_length, parse_pitch, parse_plain};
 use crate::truss::{
@@ -22,6 +23,8 @@ pub struct Cell {
 pub enum Row {
     /// The head of the sheet.
     Sheet,
+    /// The limits that the checks go by.
+    Limits,
     /// A joint.
     Joint(JointId),
     /// A member.
@@ -69,6 +72,8 @@ pub enum Column {
     Title,
     /// The unit of the sheet.
     Unit,
+    /// A limit.
+    Limit(Adjustable),
     /// A whole line that adds something.
     Line,
 }
@@ -89,6 +94,7 @@ pub(super) fn edit_of(truss: &Truss, cell: Cell, text: &str) -> Result<(Edit, St
     let text = text.trim();
     match cell.row {
         Row::Sheet => sheet_edit(truss, cell.column, text),
+        Row::Limits => Err("a limit is no part of the truss".into()),
         Row::Joint(id) => joint_edit(truss, id, cell.column, text),
         Row::Member(id) => member_edit(truss, id, cell.column, text),
         Row::Figure(id) => figure_edit(truss, id, cell.column, text),
@@ -111,6 +117,10 @@ pub fn understood(truss: &Truss, cell: Cell, text: &str) -> Option<Result<String
     let result = match (cell.row, cell.column) {
         (_, Column::X | Column::Y) | (Row::Sheet, Column::Step) => length(text),
         (_, Column::NormalX | Column::NormalY) => plain(text),
+        (Row::Limits, Column::Limit(limit)) => {
+            let entered = limit.entered(&Default::default(), truss.unit, text);
+            return Some(entered.map(|limits| limit.text(&limits, truss.unit)));
+        }
         (Row::Figure(id), Column::Value) => match &truss.figures.get(id.index())?.kind {
             FigureKind::Pitch { .. } => parse_pitch(text).map(|(rise, run)| format!("{} : {}", rise.value, run.value)),
             FigureKind::Angle { .. } => parse_plain(text).map(|value| format!("{value} degrees")),

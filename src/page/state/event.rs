@@ -22,6 +22,8 @@ pub enum Event {
     LinkArrived(String),
     /// Work of an earlier time was found in this browser.
     KeptFound(String),
+    /// Limits of an earlier time were found in this browser.
+    LimitsFound(String),
     /// The kept work was taken up again.
     KeptTaken,
     /// The work could not be kept in this browser.
@@ -227,6 +229,8 @@ pub enum Effect {
     FocusBoard,
     /// Bring the open finding into view.
     RevealFinding,
+    /// Remember the limits, as this text.
+    KeepLimits(String),
     /// Remember the theme.
     KeepTheme(&'static str),
     /// Set the title of the window.

@@ -1,12 +1,12 @@
 //! The one function in which the page changes.
 
 use super::camera::{Camera, Pixel};
-use super::cells::{Cell, edit_of, entry_edit};
+use super::cells::{Cell, Column, edit_of, entry_edit};
 use super::checked::Checked;
 use super::event::{Ask, Effect, Event, KeyPress};
 use super::model::{Book, Drag, Message, Pen, Refused, Shown, Source, State, Thing, Tone};
 use super::{board_events, draw, files, keys};
-use crate::checks::Report;
+use crate::checks::{Adjustable, Report};
 use crate::exchange::read_truss;
 use crate::truss::{Edit, JointId, Selection, Truss};
 use std::rc::Rc;
@@ -30,6 +30,7 @@ fn apply(state: &mut State, event: Event, effects: &mut Vec<Effect>) {
         Event::FileFailed(name, why) => say(state, Tone::Refused, format!("{name} could not be read: {why}")),
         Event::LinkArrived(fragment) => files::open_link(state, &fragment, effects),
         Event::KeptFound(text) => state.kept = read_truss(text.as_bytes()).ok().map(Rc::new),
+        Event::LimitsFound(text) => state.limits = serde_json::from_str(&text).map(Rc::new).unwrap_or_default(),
         Event::KeptTaken => take_kept(state, effects),
         Event::KeepFailed => say(
             state,
@@ -279,7 +280,22 @@ fn take_implied(state: &mut State, index: usize, effects: &mut Vec<Effect>) {
     }
 }
 
+fn enter_limit(state: &mut State, limit: Adjustable, text: &str, effects: &mut Vec<Effect>) -> Result<(), String> {
+    let limits = limit.entered(&state.limits, state.truss.unit, text)?;
+    if limits != *state.limits {
+        effects.push(Effect::KeepLimits(serde_json::to_string(&limits).unwrap_or_default()));
+        state.limits = Rc::new(limits);
+        start_checks(state, effects);
+    }
+    Ok(())
+}
+
 fn enter_cell(state: &mut State, cell: Cell, text: String, effects: &mut Vec<Effect>) {
+    if let Column::Limit(limit) = cell.column {
+        let entered = enter_limit(state, limit, &text, effects);
+        state.refused = entered.err().map(|error| Refused { cell, text, error });
+        return;
+    }
     let result = edit_of(&state.truss, cell, &text)
         .and_then(|(edit, label)| state.truss.edited(&edit).map_err(|error| error.to_string()).map(|_| (edit, label)));
     match result {

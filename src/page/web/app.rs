@@ -76,6 +76,9 @@ impl Component for App {
             on,
         };
         app.take(PageEvent::LinkArrived(shell::fragment()));
+        if let Some(text) = shell::kept_limits() {
+            app.take(PageEvent::LimitsFound(text));
+        }
         if let Some(text) = shell::kept_work() {
             app.take(PageEvent::KeptFound(text));
         }
@@ -117,7 +120,7 @@ impl Component for App {
                         entry_error={state.entry_error.clone()}
                         on={on.clone()}
                     />
-                    <Evidence view={view::evidence_view(state)} on={on.clone()} />
+                    <Evidence view={view::evidence_view(state)} truss={state.truss.clone()} on={on.clone()} />
                 </main>
                 <Book view={view::book_view(state)} truss={state.truss.clone()} pointed={state.pointed} on={on.clone()} />
                 { for state.help.then(|| help(on)) }

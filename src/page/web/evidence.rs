@@ -1,13 +1,17 @@
 //! The evidence for the chosen question.
 
 use super::answers::sign;
-use crate::page::state::view::{EvidenceLine, EvidenceView, FindingView, Sign, SuspectView};
+use super::field::Field;
+use crate::page::state::view::{EvidenceLine, EvidenceView, FindingView, LimitView, Sign, SuspectView};
 use crate::page::state::{Event as PageEvent, Thing};
+use crate::truss::Truss;
+use std::rc::Rc;
 use yew::prelude::*;
 
 #[derive(Properties, PartialEq)]
 pub(super) struct EvidenceProps {
     pub(super) view: Option<EvidenceView>,
+    pub(super) truss: Rc<Truss>,
     pub(super) on: Callback<PageEvent>,
 }
 
@@ -33,7 +37,23 @@ pub(super) fn Evidence(props: &EvidenceProps) -> Html {
             </ul>
             if view.more > 0 { <p class="more">{ format!("and {} more", view.more) }</p> }
             if view.suspects.is_empty() && view.findings.is_empty() { <p class="nothing">{ "Nothing to report." }</p> }
+            { for view.limits.iter().enumerate().map(|(index, limit)| limit_item(limit, index, &props.truss, on)) }
         </aside>
+    }
+}
+
+/// A limit, to be changed where its effect is seen.
+fn limit_item(limit: &LimitView, index: usize, truss: &Rc<Truss>, on: &Callback<PageEvent>) -> Html {
+    let Some(cell) = limit.cell.cell else { return Html::default() };
+    html! {
+        <div class="limit">
+            <p class="limit-line">
+                <span>{ limit.name }</span>
+                <Field view={limit.cell.clone()} {cell} at={(index, 98)} truss={truss.clone()} on={on.clone()} />
+                <span class="means">{ &limit.means }</span>
+            </p>
+            <p class="limit-source">{ limit.source }</p>
+        </div>
     }
 }
 

@@ -18,6 +18,8 @@ use yew::Callback;
 const WORK: &str = "chordwright.work";
 /// Where the theme is kept.
 const THEME: &str = "chordwright.theme";
+/// Where the limits are kept.
+const LIMITS: &str = "chordwright.limits";
 /// Milliseconds that the work may wait to be kept.
 const KEEP_AFTER: u32 = 300;
 
@@ -45,6 +47,7 @@ impl Shell {
             Effect::FocusEntry => focus_soon("#entry"),
             Effect::FocusBoard => focus_soon("#board"),
             Effect::RevealFinding => {}
+            Effect::KeepLimits(text) => drop(LocalStorage::set(LIMITS, text)),
             Effect::KeepTheme(name) => drop(LocalStorage::set(THEME, name)),
             Effect::SetTitle(title) => document().set_title(&window_title(&title)),
         }
@@ -67,6 +70,11 @@ fn window_title(title: &str) -> String {
 /// The work that this browser kept, if any.
 pub(super) fn kept_work() -> Option<String> {
     LocalStorage::get(WORK).ok()
+}
+
+/// The limits that this browser remembers, if any.
+pub(super) fn kept_limits() -> Option<String> {
+    LocalStorage::get(LIMITS).ok()
 }
 
 /// The theme that this browser remembers, if any.

@@ -1,9 +1,10 @@
 //! The evidence for the chosen question: findings, worst first; one opened.
 
 use super::answers::Sign;
-use crate::checks::{CloseState, Evidence, Finding, Places, Question, Report, StandsState, Suspect};
+use super::book::{CellKind, CellView};
+use crate::checks::{Adjustable, CloseState, Evidence, Finding, Places, Question, Report, StandsState, Suspect};
 use crate::measure::{Sheet, pretty};
-use crate::page::state::{Checked, Shown, State, Thing};
+use crate::page::state::{Cell, Checked, Column, Row, Shown, State, Thing};
 use crate::truss::Truss;
 
 /// The evidence for one question.
@@ -19,6 +20,8 @@ pub struct EvidenceView {
     pub suspects: Vec<SuspectView>,
     /// The findings.
     pub findings: Vec<FindingView>,
+    /// The limits that the answer goes by.
+    pub limits: Vec<LimitView>,
     /// How many findings more there are than are shown.
     pub more: usize,
     /// True when sketch and layout can be switched.
@@ -27,6 +30,19 @@ pub struct EvidenceView {
     pub layout_shown: bool,
     /// True while the answers are worked out anew.
     pub waiting: bool,
+}
+
+/// A limit that the answer goes by, to be changed here.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct LimitView {
+    /// What it is called.
+    pub name: &'static str,
+    /// Its value.
+    pub cell: CellView,
+    /// What it comes to on this sheet.
+    pub means: String,
+    /// Where its default comes from.
+    pub source: &'static str,
 }
 
 /// A figure that may be to blame.
@@ -116,11 +132,42 @@ pub fn evidence_view(state: &State) -> Option<EvidenceView> {
         numbers: numbers(checked, question).into_iter().map(|(name, value)| (name, pretty(&value))).collect(),
         suspects: suspects.iter().enumerate().map(|item| suspect_view(state, truss, item, suspects)).collect(),
         findings: of_question().take(MOST).map(|(index, f)| finding_view(state, truss, index, f)).collect(),
+        limits: limits(state, truss, question),
         more: of_question().count().saturating_sub(MOST),
         has_layout: state.has_layout(),
         layout_shown: state.has_layout() && state.shown != Shown::Sketch,
         waiting: state.fresh().is_none(),
     })
+}
+
+fn limits(state: &State, truss: &Truss, question: Question) -> Vec<LimitView> {
+    let limit = match question {
+        Question::True => Adjustable::Near,
+        Question::Clear => Adjustable::Tight,
+        Question::Cut => Adjustable::Piece,
+        Question::Close | Question::Stands => return Vec::new(),
+    };
+    let cell = Cell::new(Row::Limits, Column::Limit(limit));
+    let refused = state.refused.as_ref().filter(|refused| refused.cell == cell);
+    let means = match limit {
+        Adjustable::Near => Sheet::of(truss.unit, &truss.step.value).exact_words(&state.limits.near(truss)),
+        Adjustable::Tight => {
+            let tenth = crate::exact::ratio(1, 10);
+            let degrees = crate::exact::nearest_degrees_of_spread(&state.limits.tight_spread, &tenth);
+            degrees.map_or_else(String::new, |(steps, _)| {
+                format!("{}°", crate::measure::decimal(&(tenth * crate::exact::Rational::from_integer(steps)), 1))
+            })
+        }
+        Adjustable::Piece => String::new(),
+    };
+    let cell = CellView {
+        cell: Some(cell),
+        text: refused.map_or_else(|| limit.text(&state.limits, truss.unit), |refused| refused.text.clone()),
+        label: limit.name().into(),
+        kind: CellKind::Value,
+        error: refused.map(|refused| pretty(&refused.error)).unwrap_or_default(),
+    };
+    vec![LimitView { name: limit.name(), cell, means: pretty(&means), source: limit.source() }]
 }
 
 fn suspect_view(state: &State, truss: &Truss, (index, suspect): (usize, &Suspect), blamed: &[Suspect]) -> SuspectView {

@@ -14,7 +14,7 @@ mod sheet;
 pub use answers::{AnswerTile, Sign, WorkView, answer_tiles, work_view};
 pub use board::{DrawingView, Turned, drawing_view};
 pub use book::{BookView, CellKind, CellView, PAGE_ROWS, RowView, book_view, column_titles};
-pub use evidence::{EvidenceLine, EvidenceView, FindingView, MendView, SuspectView, evidence_view};
+pub use evidence::{EvidenceLine, EvidenceView, FindingView, LimitView, MendView, SuspectView, evidence_view};
 pub use labels::{Anchor, LabelView};
 pub use overlay::{OverlayView, overlay_view};
 pub use path::PathView;
