@@ -42,6 +42,7 @@ const DRAG: &str = r#"
   fire('pointerup', 16, -16);
   await turn();
   const drop = performance.now() - begin;
+  for (let i = 0; i < 30 && !document.querySelector('.answer.stale'); i++) await frame();
   while (document.querySelector('.answer.stale')) await new Promise((done) => setTimeout(done, 4));
   const answered = performance.now() - begin;
   const middle = (list) => list.sort((a, b) => a - b)[Math.floor(list.length / 2)];

@@ -106,6 +106,8 @@ pub enum Event {
     LinkClosed,
     /// A print was asked for.
     PrintAsked,
+    /// The browser begins to print, or has done so.
+    Printing(bool),
     /// Another theme was asked for.
     ThemeAsked,
     /// The reader's system asks for no motion on the screen.

@@ -61,6 +61,8 @@ pub struct State {
     pub theme: Theme,
     /// Whether motion on the screen is to be kept still.
     pub still: bool,
+    /// True while the sheet is laid out for a print.
+    pub printing: bool,
     /// The last thing worth saying.
     pub message: Option<Message>,
     /// An entry in a table that was refused; what was typed is kept.

@@ -101,7 +101,11 @@ fn apply(state: &mut State, event: Event, effects: &mut Vec<Effect>) {
         Event::LinkAsked => files::make_link(state, effects),
         Event::LinkCopied(done) => link_copied(state, done),
         Event::LinkClosed => state.link = None,
-        Event::PrintAsked => effects.push(Effect::Print),
+        Event::PrintAsked => {
+            state.printing = true;
+            effects.push(Effect::Print);
+        }
+        Event::Printing(now) => state.printing = now,
         Event::ThemeAsked => {
             state.theme = state.theme.next();
             effects.push(Effect::KeepTheme(state.theme.name()));

@@ -127,7 +127,7 @@ impl Component for App {
                 { work(state, on) }
                 { message(state, on) }
                 { notice() }
-                <Sheet view={self.sheet()} />
+                if state.printing { <Sheet view={self.sheet()} /> }
             </div>
         }
     }
@@ -234,7 +234,7 @@ fn drop_callback(on: Callback<PageEvent>) -> Callback<DragEvent> {
 }
 
 fn listeners(on: &Callback<PageEvent>) -> Vec<EventListener> {
-    let (keys, links) = (on.clone(), on.clone());
+    let (keys, links, begins, ends) = (on.clone(), on.clone(), on.clone(), on.clone());
     let options = EventListenerOptions::enable_prevent_default();
     vec![
         EventListener::new_with_options(&document(), "keydown", options, move |event| {
@@ -242,6 +242,8 @@ fn listeners(on: &Callback<PageEvent>) -> Vec<EventListener> {
                 keys.emit(PageEvent::Key(press));
             }
         }),
+        EventListener::new(&window(), "beforeprint", move |_| begins.emit(PageEvent::Printing(true))),
+        EventListener::new(&window(), "afterprint", move |_| ends.emit(PageEvent::Printing(false))),
         EventListener::new(&window(), "hashchange", move |_| links.emit(PageEvent::LinkArrived(shell::fragment()))),
     ]
 }

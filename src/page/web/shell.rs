@@ -43,7 +43,8 @@ impl Shell {
             Effect::SetFragment(link) => set_fragment(&link),
             Effect::Copy(text) => copy(text, self.on.clone()),
             Effect::CopyLink(link) => copy(address_of(&link), self.on.clone()),
-            Effect::Print => drop(window().print()),
+            // Once the sheet is on the page.
+            Effect::Print => drop(Timeout::new(0, || drop(window().print())).forget()),
             Effect::FocusEntry => focus_soon("#entry"),
             Effect::FocusBoard => focus_soon("#board"),
             Effect::RevealFinding => {}
