@@ -16,6 +16,8 @@ mod freedom;
 mod implied;
 mod meaning;
 mod misfits;
+#[cfg(test)]
+mod networks;
 mod proposal;
 mod readings;
 mod search;
