@@ -38,6 +38,7 @@ pub(crate) fn blame(
         candidates = leaning_figures(problem, &[], trial);
     }
     candidates.truncate(problem.effort.trials);
+    let all = candidates.clone();
     let mut failed: Vec<(FigureId, Trial)> = Vec::new();
     let mut done = 0;
     while let Some(id) = next(&mut candidates) {
@@ -64,7 +65,7 @@ pub(crate) fn blame(
     }
     put_in_order(&mut blame.singles);
     if blame.singles.is_empty() && blame.complete {
-        pairs(problem, failed, start, watch, &mut blame);
+        pairs(problem, &all, failed, start, watch, &mut blame);
     }
     blame
 }
@@ -141,16 +142,22 @@ pub(crate) fn leaning_figures(problem: &Problem, disregarded: &[FigureId], trial
     figures
 }
 
-/// For each figure that alone does not help, the figures that the rest still leans on.
+/// One of a pair is in the support of the first proof, the other in that of the proof without it: for each figure that the
+/// whole leans on, the figures that the rest still leans on.
 fn pairs(
     problem: &Problem,
-    failed: Vec<(FigureId, Trial)>,
+    all: &[FigureId],
+    mut failed: Vec<(FigureId, Trial)>,
     start: &[[f64; 2]],
     watch: &mut dyn FnMut(Progress) -> bool,
     blame: &mut Blame,
 ) {
     let mut tried = Vec::new();
-    for (first, without) in failed.iter().take(PAIR_WIDTH) {
+    for first in all.iter().take(PAIR_WIDTH) {
+        if failed.iter().all(|(id, _)| id != first) {
+            failed.push((*first, trial_without(problem, &[*first], start)));
+        }
+        let Some((_, without)) = failed.iter().find(|(id, _)| id == first) else { continue };
         let leaning = leaning_figures(problem, &[*first], without);
         for second in set_failures(problem).into_iter().chain(leaning).take(PAIR_WIDTH) {
             if second == *first {
