@@ -4,7 +4,7 @@
 mod trusses;
 mod values;
 #[cfg(target_arch = "wasm32")]
-mod wasm;
+pub mod wasm;
 mod work;
 
 pub use values::{Corners, Fractions, Plain, floats, fractions, steps};
