@@ -214,7 +214,7 @@ fn on_few_places_as_robust_and_geo_say() {
         met += check_with_geo(&joined(&places, 4 + round % 16, &mut dice), &format!("joined, round {round}"));
         met += check_with_geo(&loose(&places), &format!("loose, round {round}"));
     }
-    assert!(met > 10_000, "only {met} meetings were tried");
+    assert!(met > 4_000, "only {met} meetings were tried");
 }
 
 /// Places all over, in sixteenths and in halves of the finest step that floating point has there.
@@ -222,13 +222,13 @@ fn on_few_places_as_robust_and_geo_say() {
 fn all_over_as_robust_and_geo_say() {
     let mut dice = Dice::new(2);
     let mut met = 0;
-    for round in 0..200 {
+    for round in 0..70 {
         let places = scattered(60, 1 << 20, &mut dice, |value, _| ratio(value, 16));
         met += check_with_geo(&loose(&places), &format!("sixteenths, round {round}"));
         let places = scattered(24, 1 << 46, &mut dice, |value, _| whole(value));
         met += check_with_geo(&joined(&places, 30, &mut dice), &format!("large, round {round}"));
     }
-    assert!(met > 10_000, "only {met} meetings were tried");
+    assert!(met > 4_000, "only {met} meetings were tried");
 }
 
 /// Places along a few lines, some off by the finest step of a floating-point number: rounded arithmetic goes wrong here.
@@ -266,5 +266,5 @@ fn at_huge_places_as_fractions_say() {
         met += check(&joined(&places, 14, &mut dice), side_by_fractions, &format!("joined, round {round}"));
         met += check(&loose(&places), side_by_fractions, &format!("loose, round {round}"));
     }
-    assert!(met > 5_000, "only {met} meetings were tried");
+    assert!(met > 4_000, "only {met} meetings were tried");
 }
