@@ -8,7 +8,7 @@ use chordwright::checks::{Limits, Placed};
 use chordwright::exact::whole;
 use chordwright::measure::Written;
 use chordwright::truss::{SupportKind, Truss};
-use chordwright_bench::{Plain, bare_lattice, long_truss};
+use chordwright_bench::{Plain, bare_lattice, braced_lattice, long_truss};
 use faer::Mat;
 use faer::linalg::solvers::Solve;
 use faer::sparse::{SparseColMat, Triplet};
@@ -17,7 +17,7 @@ use num_traits::ToPrimitive;
 const ROUNDS: usize = 7;
 const GOAL: f64 = 3.0;
 
-/// Trusses with just enough members, so that the matrix is square.
+/// Trusses with just enough members, so that the matrix is square, and one with spare members.
 pub(crate) fn measure() -> Result<Vec<Row>, String> {
     let mut rows = Vec::new();
     let cases = [
@@ -26,19 +26,16 @@ pub(crate) fn measure() -> Result<Vec<Row>, String> {
         ("long truss of 100,000", long_truss(100_000)),
         ("square lattice of 19,600", bare_lattice(98)),
         ("the same out of square", out_of_square(bare_lattice(98))),
+        ("braced lattice of 19,360 (faer: augmented)", braced_lattice(80)),
     ];
     for (name, truss) in cases {
         let (placed, limits) = (Placed::as_given(&truss), Limits::default());
         let prepared = Prepared::new(&placed, &limits);
         let stands = prepared.stands();
-        let matrix = matrix(&truss);
-        if stands.rank != matrix.ncols() || matrix.nrows() != matrix.ncols() {
-            return Err(format!(
-                "{name}: rank {} of {} columns and {} rows",
-                stands.rank,
-                matrix.ncols(),
-                matrix.nrows()
-            ));
+        let (rows_of_truss, matrix) = matrix(&truss);
+        let joints = truss.joints.len();
+        if stands.rank != 2 * joints {
+            return Err(format!("{name}: rank {} of {} columns and {rows_of_truss} rows", stands.rank, 2 * joints));
         }
         let error = solution_error(&matrix)?;
         let times = in_turn(ROUNDS, || matrix.sp_lu().is_ok(), || prepared.stands());
@@ -60,8 +57,9 @@ fn out_of_square(mut truss: Truss) -> Truss {
     truss
 }
 
-/// The rigidity matrix: a row for each member and each hold, two columns for each joint; in units of the longer legs.
-fn matrix(truss: &Truss) -> SparseColMat<usize, f64> {
+/// How many rows the rigidity matrix R has (one for each member and each hold, two columns for each joint), and a square
+/// matrix that is regular when its rank is full: R itself where it is square, else (1 R; Rᵀ 0).
+fn matrix(truss: &Truss) -> (usize, SparseColMat<usize, f64>) {
     let plain = Plain::of(&Placed::as_given(truss));
     let mut entries = Vec::new();
     for (row, &[a, b]) in plain.ends.iter().enumerate() {
@@ -85,7 +83,16 @@ fn matrix(truss: &Truss) -> SparseColMat<usize, f64> {
         }
     }
     entries.retain(|entry| entry.val != 0.0);
-    SparseColMat::try_new_from_triplets(rows, 2 * truss.joints.len(), &entries).expect("entries in their places")
+    let columns = 2 * truss.joints.len();
+    if rows == columns {
+        return (rows, SparseColMat::try_new_from_triplets(rows, columns, &entries).expect("entries in their places"));
+    }
+    let beside = entries.iter().map(|entry| Triplet::new(entry.row, rows + entry.col, entry.val));
+    let below = entries.iter().map(|entry| Triplet::new(rows + entry.col, entry.row, entry.val));
+    let unit = (0..rows).map(|row| Triplet::new(row, row, 1.0));
+    let all: Vec<_> = unit.chain(beside).chain(below).collect();
+    let size = rows + columns;
+    (rows, SparseColMat::try_new_from_triplets(size, size, &all).expect("entries in their places"))
 }
 
 /// How far from the known solution faer's is, beside the largest entry: small only when it found the matrix regular.
