@@ -11,7 +11,7 @@ use chordwright::truss::Truss;
 use close_help::generate::Dice;
 use geo::line_intersection::LineIntersection;
 use geo::sweep::{Cross, Intersections};
-use num_traits::{Signed, ToPrimitive, Zero};
+use num_traits::{ToPrimitive, Zero};
 use std::cmp::Ordering;
 use std::collections::BTreeSet;
 
@@ -47,7 +47,7 @@ fn side_by_robust(places: [&Place; 3]) -> Ordering {
 /// In fractions of any size.
 fn side_by_fractions([a, b, c]: [&Place; 3]) -> Ordering {
     let cross = (&b.0 - &a.0) * (&c.1 - &a.1) - (&b.1 - &a.1) * (&c.0 - &a.0);
-    if cross.is_zero() { Ordering::Equal } else { if cross.is_positive() { Ordering::Greater } else { Ordering::Less } }
+    cross.cmp(&Rational::zero())
 }
 
 /// Members with their places, without those that have no length or join what an earlier one joins.
