@@ -22,6 +22,8 @@ mod placed;
 mod print;
 mod report;
 mod stands;
+#[doc(hidden)]
+pub mod steps;
 
 pub use answers::{
     Answers, ClearAnswer, ClearState, CloseAnswer, CloseState, CutAnswer, JointRow, MemberRow, Motion, NeighbourSpread,

@@ -16,7 +16,7 @@ use super::findings::{Finding, Level, Rule};
 use super::frame::Frame;
 use super::print::counted;
 use boxes::Boxes;
-use meetings::member_box;
+use meetings::{Meetings, member_box};
 use panels::Panels;
 
 /// Answers the question for a placed truss.
@@ -26,8 +26,7 @@ use panels::Panels;
 /// fault makes them meaningless.
 pub(crate) fn clear(frame: &Frame) -> (ClearAnswer, Vec<Finding>) {
     let (members, doubled) = places::doubled(frame);
-    let boxes = Boxes::new(members.iter().map(|&member| (member, member_box(frame, member as usize))));
-    let met = meetings::meetings(frame, &members, &boxes, frame.limits.most_findings);
+    let (boxes, met) = met(frame, &members);
     let gaps = joints::acute_gaps(frame);
     let mut found = places::same_place(frame);
     found.extend(places::no_length(frame));
@@ -43,6 +42,19 @@ pub(crate) fn clear(frame: &Frame) -> (ClearAnswer, Vec<Finding>) {
     let summary = if is_clear { clear_summary(frame, &gaps, &panels) } else { fault_summary(&found) };
     let state = if is_clear { ClearState::Clear } else { ClearState::NotClear };
     (ClearAnswer { state, summary, panels: panels.panels, outline: panels.outline }, found)
+}
+
+/// The members in boxes, and what meets among them.
+fn met(frame: &Frame, members: &[u32]) -> (Boxes, Meetings) {
+    let boxes = Boxes::new(members.iter().map(|&member| (member, member_box(frame, member as usize))));
+    let met = meetings::meetings(frame, members, &boxes, frame.limits.most_findings);
+    (boxes, met)
+}
+
+/// The pairs of members that cross or overlap, in order.
+pub(crate) fn crossings(frame: &Frame) -> Vec<[u32; 2]> {
+    let (members, _) = places::doubled(frame);
+    met(frame, &members).1.pairs.into_iter().map(|(pair, _)| pair).collect()
 }
 
 /// `least spread 49/149 at L0; 14 panels, 1 not a triangle`.

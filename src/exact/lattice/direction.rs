@@ -36,7 +36,7 @@ impl Direction {
             return Direction::Short([0, 0]);
         }
         let (x, y) = (x / &common, y / &common);
-        let fits = |part: &BigInt| part.to_i64().filter(|part| part.abs() < WIDE_SPAN);
+        let fits = |part: &BigInt| part.to_i64().filter(|part| part.unsigned_abs() < WIDE_SPAN.unsigned_abs());
         match (fits(&x), fits(&y)) {
             (Some(x), Some(y)) => Direction::Short([x, y]),
             _ => Direction::Long([x, y]),
@@ -54,5 +54,17 @@ impl Direction {
             Direction::Short(parts) => parts.map(BigInt::from),
             Direction::Long(parts) => parts.clone(),
         }
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::Direction;
+    use num_bigint::BigInt;
+
+    #[test]
+    fn the_least_machine_integer_is_a_long_direction() {
+        let parts = [BigInt::from(i64::MIN), BigInt::from(3)];
+        assert_eq!(Direction::of_parts(parts.clone()), Direction::Long(parts));
     }
 }
