@@ -85,6 +85,15 @@ impl<'a> Frame<'a> {
         &self.spokes[self.starts[joint] as usize..self.starts[joint + 1] as usize]
     }
 
+    /// The members at a joint that leave it in one direction, where there are two or more of them.
+    pub(crate) fn same_way(&self, joint: usize) -> impl Iterator<Item = &[Spoke]> {
+        let is_along = move |s: &Spoke, t: &Spoke| {
+            let [s, t] = [s, t].map(|spoke| [joint, spoke.far as usize]);
+            self.lattice.turn(s, t) == Ordering::Equal && self.lattice.facing(s, t) == Ordering::Greater
+        };
+        self.around(joint).chunk_by(is_along).filter(|run| run.len() > 1)
+    }
+
     /// True when both ends of a member stand in one place.
     pub(crate) fn has_no_length(&self, member: usize) -> bool {
         let [a, b] = self.ends[member];

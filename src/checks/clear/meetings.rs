@@ -3,10 +3,12 @@
 use super::super::findings::{Finding, Law, Level, Rule};
 use super::super::frame::{Frame, Tally, joint_ids, member_ids, next_mark};
 use super::boxes::{Box4, Boxes};
+use super::strips::{Scanned, scan};
 use super::sweep::{properly_cross, sweep};
 use crate::exact::order;
 use crate::exact::{Orientation, Point, is_between};
 use crate::truss::{Edit, Joint, JointId, Member, MemberId};
+use std::cell::OnceCell;
 
 /// How two members meet where they should not.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
@@ -27,11 +29,71 @@ pub(crate) struct Meetings {
     pub(crate) more: bool,
 }
 
-/// Finds the meetings among members that have a length, no two between the same joints.
+/// Finds the meetings among members that have a length, no two between the same joints, given as a mask over all members.
 ///
 /// Complete up to `most` pairs; n log n time when few members meet.
-pub(crate) fn meetings(frame: &Frame, members: &[u32], boxes: &Boxes, most: usize) -> Meetings {
-    let swept = sweep(frame, members, most);
+pub(crate) fn meetings(members: &Members, most: usize) -> Meetings {
+    match scan(members.frame, &members.is_in, 2 * most) {
+        Some(scanned) => scanned_meetings(members, scanned),
+        None => swept_meetings(members, most),
+    }
+}
+
+/// Members that are looked at, and their boxes once they are needed.
+pub(crate) struct Members<'f, 'a> {
+    frame: &'f Frame<'a>,
+    is_in: Vec<bool>,
+    boxes: OnceCell<Boxes>,
+}
+
+impl<'f, 'a> Members<'f, 'a> {
+    /// Those that the mask has.
+    pub(crate) fn new(frame: &'f Frame<'a>, is_in: Vec<bool>) -> Members<'f, 'a> {
+        Members { frame, is_in, boxes: OnceCell::new() }
+    }
+
+    fn list(&self) -> Vec<u32> {
+        (0..self.is_in.len() as u32).filter(|&member| self.is_in[member as usize]).collect()
+    }
+
+    /// Their boxes.
+    pub(crate) fn boxes(&self) -> &Boxes {
+        let boxed = |member: u32| (member, member_box(self.frame, member as usize));
+        self.boxes.get_or_init(|| Boxes::new(self.list().into_iter().map(boxed)))
+    }
+}
+
+/// What the scan found, and the joints without members.
+fn scanned_meetings(members: &Members, scanned: Scanned) -> Meetings {
+    let frame = members.frame;
+    let Scanned { mut pairs, mut on_member } = scanned;
+    for joint in (0..frame.joint_count()).filter(|&joint| frame.around(joint).is_empty()) {
+        let [x, y] = frame.lattice.coarse(joint);
+        members.boxes().touching([x, y, x, y], |member| {
+            let [left, right] = frame.left_to_right(member as usize);
+            let is_inside = frame.rank[left] < frame.rank[joint] && frame.rank[joint] < frame.rank[right];
+            if is_inside && frame.lattice.orientation(left, right, joint) == Orientation::On {
+                on_member.push((joint as u32, member));
+            }
+            true
+        });
+    }
+    let on_member = every_joint_there(frame, &on_member);
+    order::sort(&mut pairs);
+    pairs.dedup();
+    let inside = |member: u32| -> Vec<u32> {
+        on_member.iter().filter(|&&(_, other)| other == member).map(|&(joint, _)| joint).collect()
+    };
+    let met = |pair: [u32; 2]| {
+        let [s, t] = pair.map(|member| member as usize);
+        meeting(frame, s, t, &inside(pair[0])).map(|meeting| (pair, meeting))
+    };
+    Meetings { pairs: pairs.into_iter().filter_map(met).collect(), on_member, more: false }
+}
+
+fn swept_meetings(members: &Members, most: usize) -> Meetings {
+    let (frame, boxes) = (members.frame, members.boxes());
+    let swept = sweep(frame, &members.list(), most);
     let mut found = Meetings { pairs: Vec::new(), on_member: swept.on_member, more: swept.stopped };
     for &member in &swept.aside {
         if found.pairs.len() > 2 * most {

@@ -6,6 +6,7 @@ mod meetings;
 mod near;
 mod panels;
 mod places;
+mod strips;
 mod sweep;
 
 pub(crate) use joints::{has_member, neighbours, parts};
@@ -15,8 +16,7 @@ use super::answers::{ClearAnswer, ClearState};
 use super::findings::{Finding, Level, Rule};
 use super::frame::Frame;
 use super::print::counted;
-use boxes::Boxes;
-use meetings::{Meetings, member_box};
+use meetings::Members;
 use panels::Panels;
 
 /// Answers the question for a placed truss.
@@ -26,13 +26,14 @@ use panels::Panels;
 /// fault makes them meaningless.
 pub(crate) fn clear(frame: &Frame) -> (ClearAnswer, Vec<Finding>) {
     let (members, doubled) = places::doubled(frame);
-    let (boxes, met) = met(frame, &members);
+    let members = Members::new(frame, members);
+    let met = meetings::meetings(&members, frame.limits.most_findings);
     let gaps = joints::acute_gaps(frame);
     let mut found = places::same_place(frame);
     found.extend(places::no_length(frame));
     found.extend(doubled);
     found.extend(meetings::findings(frame, &met));
-    found.extend(near::nearly_meeting(frame, &boxes));
+    found.extend(near::nearly_meeting(frame, members.boxes()));
     found.extend(joints::tight_spreads(frame, &gaps));
     found.extend(joints::loose_ends(frame));
     found.extend(joints::apart_and_unused(frame));
@@ -44,17 +45,11 @@ pub(crate) fn clear(frame: &Frame) -> (ClearAnswer, Vec<Finding>) {
     (ClearAnswer { state, summary, panels: panels.panels, outline: panels.outline }, found)
 }
 
-/// The members in boxes, and what meets among them.
-fn met(frame: &Frame, members: &[u32]) -> (Boxes, Meetings) {
-    let boxes = Boxes::new(members.iter().map(|&member| (member, member_box(frame, member as usize))));
-    let met = meetings::meetings(frame, members, &boxes, frame.limits.most_findings);
-    (boxes, met)
-}
-
 /// The pairs of members that cross or overlap, in order.
 pub(crate) fn crossings(frame: &Frame) -> Vec<[u32; 2]> {
     let (members, _) = places::doubled(frame);
-    met(frame, &members).1.pairs.into_iter().map(|(pair, _)| pair).collect()
+    let met = meetings::meetings(&Members::new(frame, members), frame.limits.most_findings);
+    met.pairs.into_iter().map(|(pair, _)| pair).collect()
 }
 
 /// `least spread 49/149 at L0; 14 panels, 1 not a triangle`.

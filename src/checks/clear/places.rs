@@ -43,21 +43,26 @@ pub(crate) fn no_length(frame: &Frame) -> Vec<Finding> {
     tally.finish()
 }
 
-/// The members with a length, one for each pair of joints; and a finding for every pair of joints that has more.
-pub(crate) fn doubled(frame: &Frame) -> (Vec<u32>, Vec<Finding>) {
+/// For each member whether it is looked at further: it has a length, and is the first between its joints. And a finding for
+/// every pair of joints that has more than one.
+pub(crate) fn doubled(frame: &Frame) -> (Vec<bool>, Vec<Finding>) {
+    let mut is_first: Vec<bool> = (0..frame.ends.len()).map(|member| !frame.has_no_length(member)).collect();
+    let mut groups: Vec<Vec<u32>> = Vec::new();
+    for joint in 0..frame.joint_count() {
+        for run in frame.same_way(joint) {
+            let mut run: Vec<(u32, u32)> = run.iter().map(|spoke| (spoke.far, spoke.member)).collect();
+            order::sort(&mut run);
+            let pairs = run.chunk_by(|a, b| a.0 == b.0).filter(|group| group.len() > 1 && group[0].0 as usize > joint);
+            groups.extend(pairs.map(|group| group.iter().map(|&(_, member)| member).collect::<Vec<u32>>()));
+        }
+    }
+    order::sort(&mut groups);
     let mut tally = Tally::new(Rule::Doubled, Level::Fault, frame.limits);
-    let key = |member: u32| {
-        let [a, b] = frame.ends[member as usize];
-        [a.min(b), a.max(b)]
-    };
-    let mut members: Vec<u32> = (0..frame.ends.len() as u32).filter(|&m| !frame.has_no_length(m as usize)).collect();
-    order::sort_by_key(&mut members, |&member| (key(member), member));
-    let mut groups: Vec<&[u32]> = members.chunk_by(|&a, &b| key(a) == key(b)).collect();
-    order::sort_by_key(&mut groups, |group| group[0]);
-    for group in groups.iter().filter(|group| group.len() > 1) {
+    for group in &groups {
+        group[1..].iter().for_each(|&member| is_first[member as usize] = false);
         tally.add(|rule, level| doubled_finding(frame, group, rule, level));
     }
-    (groups.iter().map(|group| group[0]).collect(), tally.finish())
+    (is_first, tally.finish())
 }
 
 fn doubled_finding(frame: &Frame, group: &[u32], rule: Rule, level: Level) -> Finding {
