@@ -32,6 +32,8 @@ pub(crate) struct Frame<'a> {
     pub(crate) by_rank: Vec<u32>,
     starts: Vec<u32>,
     spokes: Vec<Spoke>,
+    /// Joints with members that leave them in one direction, and which of their spokes these are.
+    runs: Vec<(u32, [u32; 2])>,
     supported: Vec<bool>,
     free_marks: [OnceCell<String>; 6],
 }
@@ -54,6 +56,7 @@ impl<'a> Frame<'a> {
         let ends: Vec<[usize; 2]> = truss.members.iter().map(|m| m.ends().map(JointId::index)).collect();
         let (rank, by_rank) = ranks(&lattice);
         let (starts, spokes) = spokes(&lattice, &ends, &rank);
+        let runs = runs(&lattice, &starts, &spokes);
         let mut supported = vec![false; truss.joints.len()];
         truss.supports.iter().for_each(|support| supported[support.joint.index()] = true);
         Frame {
@@ -70,6 +73,7 @@ impl<'a> Frame<'a> {
             by_rank,
             starts,
             spokes,
+            runs,
             supported,
             free_marks: Default::default(),
         }
@@ -85,13 +89,9 @@ impl<'a> Frame<'a> {
         &self.spokes[self.starts[joint] as usize..self.starts[joint + 1] as usize]
     }
 
-    /// The members at a joint that leave it in one direction, where there are two or more of them.
-    pub(crate) fn same_way(&self, joint: usize) -> impl Iterator<Item = &[Spoke]> {
-        let is_along = move |s: &Spoke, t: &Spoke| {
-            let [s, t] = [s, t].map(|spoke| [joint, spoke.far as usize]);
-            self.lattice.turn(s, t) == Ordering::Equal && self.lattice.facing(s, t) == Ordering::Greater
-        };
-        self.around(joint).chunk_by(is_along).filter(|run| run.len() > 1)
+    /// The members that leave a joint in one direction, where there are two or more of them: the joint, and these members.
+    pub(crate) fn same_way(&self) -> impl Iterator<Item = (usize, &[Spoke])> {
+        self.runs.iter().map(|&(joint, [from, to])| (joint as usize, &self.spokes[from as usize..to as usize]))
     }
 
     /// True when both ends of a member stand in one place.
@@ -239,6 +239,28 @@ fn ranks(lattice: &Lattice) -> (Vec<u32>, Vec<u32>) {
         rank[joint as usize] = next;
     }
     (rank, order)
+}
+
+/// The runs of two spokes or more in one direction.
+fn runs(lattice: &Lattice, starts: &[u32], spokes: &[Spoke]) -> Vec<(u32, [u32; 2])> {
+    let mut runs = Vec::new();
+    for joint in 0..lattice.len() {
+        let is_along = |place: usize| {
+            let [s, t] = [place - 1, place].map(|place| [joint, spokes[place].far as usize]);
+            lattice.turn(s, t) == Ordering::Equal && lattice.facing(s, t) == Ordering::Greater
+        };
+        let (first, end) = (starts[joint] as usize, starts[joint + 1] as usize);
+        let mut from = first;
+        for place in first + 1..=end {
+            if place == end || !is_along(place) {
+                if place - from > 1 {
+                    runs.push((joint as u32, [from as u32, place as u32]));
+                }
+                from = place;
+            }
+        }
+    }
+    runs
 }
 
 /// The spokes of all joints in one list, with where those of each joint start.

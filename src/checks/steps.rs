@@ -5,7 +5,7 @@ use super::clear::crossings;
 use super::frame::Frame;
 use super::limits::Limits;
 use super::placed::Placed;
-use super::stands::stands;
+use super::stands::{is_held, stands};
 use crate::exact::Lattice;
 
 /// A placed truss as the geometric questions see it: its joints on a lattice, its members in order around every joint.
@@ -31,6 +31,11 @@ impl<'a> Prepared<'a> {
     /// to the findings that the limits allow.
     pub fn crossings(&self) -> Vec<[u32; 2]> {
         crossings(&self.0)
+    }
+
+    /// True when members and holds are proved to have a full rank.
+    pub fn is_held(&self) -> bool {
+        is_held(&self.0)
     }
 
     /// Whether it stands: the rank of the rigidity matrix, and a motion where it is short.

@@ -48,13 +48,11 @@ pub(crate) fn no_length(frame: &Frame) -> Vec<Finding> {
 pub(crate) fn doubled(frame: &Frame) -> (Vec<bool>, Vec<Finding>) {
     let mut is_first: Vec<bool> = (0..frame.ends.len()).map(|member| !frame.has_no_length(member)).collect();
     let mut groups: Vec<Vec<u32>> = Vec::new();
-    for joint in 0..frame.joint_count() {
-        for run in frame.same_way(joint) {
-            let mut run: Vec<(u32, u32)> = run.iter().map(|spoke| (spoke.far, spoke.member)).collect();
-            order::sort(&mut run);
-            let pairs = run.chunk_by(|a, b| a.0 == b.0).filter(|group| group.len() > 1 && group[0].0 as usize > joint);
-            groups.extend(pairs.map(|group| group.iter().map(|&(_, member)| member).collect::<Vec<u32>>()));
-        }
+    for (joint, run) in frame.same_way() {
+        let mut run: Vec<(u32, u32)> = run.iter().map(|spoke| (spoke.far, spoke.member)).collect();
+        order::sort(&mut run);
+        let pairs = run.chunk_by(|a, b| a.0 == b.0).filter(|group| group.len() > 1 && group[0].0 as usize > joint);
+        groups.extend(pairs.map(|group| group.iter().map(|&(_, member)| member).collect::<Vec<u32>>()));
     }
     order::sort(&mut groups);
     let mut tally = Tally::new(Rule::Doubled, Level::Fault, frame.limits);

@@ -41,16 +41,18 @@ pub(crate) fn scan(frame: &Frame, is_in: &[bool], most: usize) -> Option<Scanned
     let mut found = Scanned::default();
     let strips = Strips::new(&entries);
     let mut left = MOST_EACH * entries.len();
-    for (strip, there) in strips.deal(&entries).iter().enumerate() {
+    let (starts, dealt) = strips.deal(entries);
+    for strip in 0..strips.count {
+        let there = &dealt[starts[strip]..starts[strip + 1]];
+        // A pair is seen in every strip that both are in, and counts in the lowest of them.
+        let base = if strip == 0 { i64::MIN } else { strips.base(strip) };
         for (place, s) in there.iter().enumerate() {
-            let s = &entries[*s as usize];
             for t in &there[place + 1..] {
-                let t = &entries[*t as usize];
                 if t.left > s.right {
                     break;
                 }
                 left = left.checked_sub(1)?;
-                if t.low > s.high || s.low > t.high || strips.of(s.low.max(t.low)) != strip {
+                if t.low > s.high || s.low > t.high || s.low.max(t.low) < base {
                     continue;
                 }
                 compare(frame, s, t, &mut found);
@@ -80,39 +82,57 @@ fn from_the_left(frame: &Frame, is_in: &[bool]) -> Vec<Entry> {
     entries
 }
 
-/// Strips of one height.
+/// Strips of one height, a power of two.
 #[derive(Debug)]
 struct Strips {
     low: i64,
-    height: i64,
+    shift: u32,
     count: usize,
 }
 
 impl Strips {
-    /// Strips twice as high as the members are on average.
+    /// Strips up to four times as high as the members are on average.
     fn new(entries: &[Entry]) -> Strips {
         let low = entries.iter().map(|e| e.low).min().unwrap_or(0);
         let high = entries.iter().map(|e| e.high).max().unwrap_or(0);
         let heights: i128 = entries.iter().map(|e| i128::from(e.high - e.low)).sum();
         let mean = (heights / entries.len().max(1) as i128) as i64;
         let most = entries.len().max(1) as i64;
-        let height = (2 * mean).max((high - low) / most).saturating_add(1);
-        Strips { low, height, count: ((high - low) / height) as usize + 1 }
+        let height = (2 * mean).max((high - low) / most).max(1) as u64;
+        let shift = height.next_power_of_two().trailing_zeros();
+        Strips { low, shift, count: ((high - low) >> shift) as usize + 1 }
     }
 
     fn of(&self, y: i64) -> usize {
-        ((y - self.low) / self.height) as usize
+        ((y - self.low) >> self.shift) as usize
     }
 
-    /// The members of each strip, by their places in the list, in its order.
-    fn deal(&self, entries: &[Entry]) -> Vec<Vec<u32>> {
-        let mut dealt = vec![Vec::new(); self.count];
-        for (place, entry) in entries.iter().enumerate() {
-            for strip in &mut dealt[self.of(entry.low)..=self.of(entry.high)] {
-                strip.push(place as u32);
+    fn base(&self, strip: usize) -> i64 {
+        self.low + ((strip as i64) << self.shift)
+    }
+
+    /// The members of each strip, in the order of the list: where each strip's begin, and all of them.
+    fn deal(&self, entries: Vec<Entry>) -> (Vec<usize>, Vec<Entry>) {
+        if self.count == 1 {
+            return (vec![0, entries.len()], entries);
+        }
+        let mut starts = vec![0; self.count + 1];
+        for entry in &entries {
+            starts[self.of(entry.low) + 1..=self.of(entry.high) + 1].iter_mut().for_each(|count| *count += 1);
+        }
+        for strip in 1..starts.len() {
+            starts[strip] += starts[strip - 1];
+        }
+        let Some(&first) = entries.first() else { return (starts, Vec::new()) };
+        let mut dealt = vec![first; starts[self.count]];
+        let mut next = starts.clone();
+        for entry in &entries {
+            for next in &mut next[self.of(entry.low)..=self.of(entry.high)] {
+                dealt[*next] = *entry;
+                *next += 1;
             }
         }
-        dealt
+        (starts, dealt)
     }
 }
 
@@ -144,25 +164,23 @@ fn compare(frame: &Frame, s: &Entry, t: &Entry, found: &mut Scanned) {
     }
 }
 
-/// Members that leave a joint in one direction overlap, and the shorter one's end is inside the longer one.
-/// False when there are more than `most` pairs.
+/// Members that leave a joint in one direction overlap, and the shorter one's end is inside the longer one. False when there
+/// are more than `most` pairs.
 fn at_joints(frame: &Frame, is_in: &[bool], most: usize, found: &mut Scanned) -> bool {
-    for joint in 0..frame.joint_count() {
-        for run in frame.same_way(joint) {
-            let run: Vec<Spoke> = run.iter().copied().filter(|spoke| is_in[spoke.member as usize]).collect();
-            for (place, first) in run.iter().enumerate() {
-                for other in &run[place + 1..] {
-                    found.pairs.push([first.member.min(other.member), first.member.max(other.member)]);
-                    let [one, two] = [first, other].map(|spoke| [joint, spoke.far as usize]);
-                    match frame.lattice.compare_quadrances(one, two) {
-                        Ordering::Less => found.on_member.push((first.far, other.member)),
-                        Ordering::Greater => found.on_member.push((other.far, first.member)),
-                        Ordering::Equal => {}
-                    }
+    for (joint, run) in frame.same_way() {
+        let run: Vec<Spoke> = run.iter().copied().filter(|spoke| is_in[spoke.member as usize]).collect();
+        for (place, first) in run.iter().enumerate() {
+            for other in &run[place + 1..] {
+                found.pairs.push([first.member.min(other.member), first.member.max(other.member)]);
+                let [one, two] = [first, other].map(|spoke| [joint, spoke.far as usize]);
+                match frame.lattice.compare_quadrances(one, two) {
+                    Ordering::Less => found.on_member.push((first.far, other.member)),
+                    Ordering::Greater => found.on_member.push((other.far, first.member)),
+                    Ordering::Equal => {}
                 }
-                if found.pairs.len() > most {
-                    return false;
-                }
+            }
+            if found.pairs.len() > most {
+                return false;
             }
         }
     }

@@ -1,6 +1,7 @@
 //! The rank of a rigidity matrix, and what proves it.
 
 use super::super::frame::Frame;
+use super::bodies::full_rank;
 use super::factor::{Factor, Pattern, TooMuch};
 use super::lift::{NotLifted, Velocities, lift};
 use super::matrix::{Matrix, NOWHERE};
@@ -50,9 +51,12 @@ const TRIED: usize = 16;
 ///
 /// [`TooMuch`] when the elimination would be beyond the bound of work.
 pub(crate) fn judge(frame: &Frame, matrix: &Matrix) -> Result<Judged, TooMuch> {
-    let place: Vec<[i64; 2]> = matrix.joints.iter().map(|&joint| frame.lattice.coarse(joint as usize)).collect();
+    if let Some(rank) = full_rank(frame).filter(|rank| rank + matrix.ground == matrix.rows.len()) {
+        let stressed = vec![false; matrix.rows.len()];
+        return Ok(Judged { rank, ways: 0, certainty: Certainty::Full, is_generic: false, motion: None, stressed });
+    }
     let work = frame.limits.most_work;
-    let pattern = Pattern::new(matrix, &place, work)?;
+    let pattern = Pattern::new(matrix, &places(frame, matrix), work)?;
     let mut best: Option<(Factor, Option<Velocities>)> = None;
     for prime in PRIMES {
         let field = Field::new(prime);
@@ -85,6 +89,18 @@ pub(crate) fn judge(frame: &Frame, matrix: &Matrix) -> Result<Judged, TooMuch> {
             vec![false; matrix.rows.len()]
         },
     })
+}
+
+fn places(frame: &Frame, matrix: &Matrix) -> Vec<[i64; 2]> {
+    matrix.joints.iter().map(|&joint| frame.lattice.coarse(joint as usize)).collect()
+}
+
+/// True when elimination modulo a prime proves a full rank.
+pub(crate) fn is_full(frame: &Frame, matrix: &Matrix) -> bool {
+    let Ok(pattern) = Pattern::new(matrix, &places(frame, matrix), frame.limits.most_work) else { return false };
+    let field = Field::new(PRIMES[0]);
+    let factor = eliminated(matrix, &pattern, field, &|| matrix.residues(field));
+    factor.is_some_and(|factor| factor.free.is_empty())
 }
 
 fn eliminated<'p>(

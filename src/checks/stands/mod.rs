@@ -1,12 +1,14 @@
 //! Does it stand? The exact rank of the rigidity matrix, and the motion when it is short.
 //!
 //! ```text
+//! Matrix -> bodies (rigid by triangles), or
 //! Matrix -> Pattern (order of elimination) -> Factor (modulo a prime) -> lift (exact motion) -> answer
 //! ```
 //!
 //! Unknowns are two for each joint that a member reaches or a support holds; a joint without either is told by *is it
 //! clear?* and counts for nothing here.
 
+mod bodies;
 mod factor;
 mod judge;
 mod lift;
@@ -46,6 +48,11 @@ pub(crate) fn stands(frame: &Frame) -> (StandsAnswer, Vec<Finding>) {
         }
         Err(factor::TooMuch) => not_settled(unknowns),
     }
+}
+
+/// True when the members and holds are proved to have a full rank.
+pub(crate) fn is_held(frame: &Frame) -> bool {
+    bodies::full_rank(frame).is_some() || judge::is_full(frame, &Matrix::new(frame))
 }
 
 fn state(frame: &Frame, judged: &Judged) -> StandsState {

@@ -153,6 +153,7 @@ impl<'a> Lattice<'a> {
     }
 
     /// The side of the line from `a` to `b` on which `c` lies.
+    #[inline]
     pub fn orientation(&self, a: usize, b: usize, c: usize) -> Orientation {
         match self.turn([a, b], [a, c]) {
             Ordering::Greater => Orientation::Left,
@@ -163,13 +164,22 @@ impl<'a> Lattice<'a> {
 
     /// The sign of the cross product of the displacements along two pairs of points: `Greater` when the second lies
     /// counter-clockwise of the first, `Equal` when they are parallel or one is null.
+    #[inline]
     pub fn turn(&self, first: [usize; 2], second: [usize; 2]) -> Ordering {
         let (v, w) = (self.difference(first), self.difference(second));
+        if self.tier == Tier::Small {
+            return (v[0] * w[1]).cmp(&(v[1] * w[0]));
+        }
+        self.wide_turn(first, second, v, w)
+    }
+
+    fn wide_turn(&self, first: [usize; 2], second: [usize; 2], v: [i64; 2], w: [i64; 2]) -> Ordering {
         let quick = self.quick_sign(v, [w[1], w[0].wrapping_neg()]);
         quick.unwrap_or_else(|| self.unreduced(first).cross(&self.unreduced(second)).cmp(&BigInt::zero()))
     }
 
     /// The sign of the dot product of the displacements along two pairs of points.
+    #[inline]
     pub fn facing(&self, first: [usize; 2], second: [usize; 2]) -> Ordering {
         let quick = self.quick_sign(self.difference(first), self.difference(second));
         quick.unwrap_or_else(|| self.unreduced(first).dot(&self.unreduced(second)).cmp(&BigInt::zero()))
@@ -325,6 +335,7 @@ impl<'a> Lattice<'a> {
         (cross * cross, squares(v) as u128 * squares(w) as u128)
     }
 
+    #[inline]
     fn difference(&self, [a, b]: [usize; 2]) -> [i64; 2] {
         let (p, q) = (self.coarse[a], self.coarse[b]);
         [q[0] - p[0], q[1] - p[1]]
@@ -336,6 +347,7 @@ impl<'a> Lattice<'a> {
     }
 
     /// The sign of `v · w` where integers can tell.
+    #[inline]
     fn quick_sign(&self, v: [i64; 2], w: [i64; 2]) -> Option<Ordering> {
         match self.tier {
             Tier::Small => Some((v[0] * w[0] + v[1] * w[1]).cmp(&0)),

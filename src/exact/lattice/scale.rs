@@ -28,13 +28,33 @@ pub(super) fn common_denominator(points: &[Point]) -> Option<BigInt> {
 /// The lower left corner, and the greater of width and height.
 pub(super) fn extent(points: &[Point]) -> (Point, Rational) {
     let axis = |get: fn(&Point) -> &Rational| {
-        let low = points.iter().map(get).min().cloned().unwrap_or_default();
-        let high = points.iter().map(get).max().cloned().unwrap_or_default();
+        let is_less = |a: &Rational, b: &Rational| match whole_parts(a, b) {
+            Some([a, b]) => a < b,
+            None => a < b,
+        };
+        let mut ends = points.first().map(|point| [get(point); 2]);
+        if let Some([low, high]) = &mut ends {
+            for value in points.iter().map(get) {
+                if is_less(value, low) {
+                    *low = value;
+                } else if is_less(high, value) {
+                    *high = value;
+                }
+            }
+        }
+        let [low, high] = ends.map_or_else(Default::default, |ends| ends.map(Rational::clone));
         let span = high - &low;
         (low, span)
     };
     let ((x, width), (y, height)) = (axis(|p| &p.x), axis(|p| &p.y));
     (Point { x, y }, width.max(height))
+}
+
+/// Two numbers over the product of their denominators, where that fits.
+fn whole_parts(a: &Rational, b: &Rational) -> Option<[i128; 2]> {
+    let small = |value: &Rational| Some([value.numer().to_i64()?, value.denom().to_i64()?].map(i128::from));
+    let ([a, over_a], [b, over_b]) = (small(a)?, small(b)?);
+    Some([a * over_b, b * over_a])
 }
 
 /// All coordinates above `low` in lattice steps; `None` when they do not fit.

@@ -38,7 +38,7 @@ pub(crate) fn measure() -> Result<Vec<Row>, String> {
             return Err(format!("{name}: rank {} of {} columns and {rows_of_truss} rows", stands.rank, 2 * joints));
         }
         let error = solution_error(&matrix)?;
-        let times = in_turn(ROUNDS, || matrix.sp_lu().is_ok(), || prepared.stands());
+        let times = in_turn(ROUNDS, || matrix.sp_lu().is_ok(), || prepared.is_held());
         let told = times.map(milliseconds);
         let row = Row::at_least(name, ratio(times), GOAL, "x");
         rows.push(row.with(format!("faer {}, ours {}; faer's error {error:.0e}", told[0], told[1])));
