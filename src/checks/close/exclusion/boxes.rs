@@ -58,7 +58,8 @@ impl Frame {
             stress.conditions.iter().map(|s| condition_of(conditions, *s)).collect::<Option<_>>()?;
         let sides: Vec<&Side> = stress.sides.iter().map(|index| sides.get(*index)).collect::<Option<_>>()?;
         let joints = joints_of(stress, &used, &sides);
-        if !stress.unit.is_positive() || stress.origin.index() >= truss.joints.len() {
+        let is_there = |joint: JointId| joint.index() < truss.joints.len();
+        if !stress.unit.is_positive() || !is_there(stress.origin) || !stress.turned.is_none_or(is_there) {
             return None;
         }
         let mut places: BTreeMap<JointId, usize> = BTreeMap::new();
@@ -403,6 +404,8 @@ fn div_up(a: i128, slope: i128) -> i128 {
 
 /// Narrows a span to numbers of these sizes.
 fn sized(span: Span, sizes: Span) -> Option<Span> {
+    // An end of a span at its bound stands for all that lies beyond.
+    let sizes = Span { lo: sizes.lo.min(Span::ALL.hi), hi: sizes.hi.min(Span::ALL.hi) };
     let mut met = span.meet(Span { lo: -sizes.hi, hi: sizes.hi })?;
     if met.lo > -sizes.lo {
         met.lo = met.lo.max(sizes.lo);

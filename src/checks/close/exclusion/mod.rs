@@ -17,6 +17,8 @@ pub(crate) mod forms;
 pub(crate) mod judge;
 pub(crate) mod span;
 pub(crate) mod stress;
+#[cfg(test)]
+mod tampering;
 
 use super::meaning::Axis;
 use crate::exact::Rational;

@@ -6,6 +6,9 @@ use crate::exact::{Interval, Rational};
 use num_traits::ToPrimitive;
 
 /// All numbers of units from `lo` to `hi`; [`Span::ALL`] when unbounded.
+///
+/// An end at `-BOUND` or `BOUND` stands for everything beyond it as well: a span that lies wholly beyond is that end alone,
+/// never one whose ends have changed places.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub(crate) struct Span {
     /// The least.
@@ -61,7 +64,7 @@ impl Span {
     }
 
     fn clamped(self) -> Span {
-        Span { lo: self.lo.max(-BOUND), hi: self.hi.min(BOUND) }
+        Span { lo: self.lo.clamp(-BOUND, BOUND), hi: self.hi.clamp(-BOUND, BOUND) }
     }
 
     /// The squares, in square units; `None` beyond bounds above.
@@ -109,9 +112,9 @@ impl Span {
 
 /// A sum where one is unbounded at one end only.
 fn half_bounded(a: Span, b: Span) -> Span {
-    let lo = if a.lo <= -BOUND || b.lo <= -BOUND { -BOUND } else { (a.lo + b.lo).max(-BOUND) };
-    let hi = if a.hi >= BOUND || b.hi >= BOUND { BOUND } else { (a.hi + b.hi).min(BOUND) };
-    Span { lo, hi }
+    let lo = if a.lo <= -BOUND || b.lo <= -BOUND { -BOUND } else { a.lo + b.lo };
+    let hi = if a.hi >= BOUND || b.hi >= BOUND { BOUND } else { a.hi + b.hi };
+    Span { lo, hi }.clamped()
 }
 
 /// The largest integer whose square is at most `value`, which is not negative.
@@ -141,7 +144,7 @@ pub(crate) fn floor_root(value: i128) -> i128 {
 pub(crate) fn span_of(interval: &Interval, unit: &Rational) -> Span {
     let lo = (interval.lo() / unit).floor().to_integer().to_i128().unwrap_or(-BOUND);
     let hi = (interval.hi() / unit).ceil().to_integer().to_i128().unwrap_or(BOUND);
-    Span { lo: lo.max(-BOUND), hi: hi.min(BOUND) }
+    Span { lo, hi }.clamped()
 }
 
 /// An interval of squares in square units, outward; no upper bound where it is too great.
@@ -155,6 +158,25 @@ pub(crate) fn squares_of(interval: &Interval, unit: &Rational) -> (i128, Option<
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::exact::{ratio, whole};
+    use num_bigint::BigInt;
+
+    #[test]
+    fn what_lies_beyond_the_bound_is_not_empty() {
+        let beyond = Span::at(BOUND);
+        for bits in [61, 90, 126, 127, 200] {
+            let far = Rational::from_integer(BigInt::from(1) << bits);
+            let span = span_of(&Interval::around(&far, &ratio(1, 2)), &whole(1));
+            assert!(span.meet(Span::ALL).is_some() && span.hi == BOUND, "2^{bits} {span:?}");
+            let span = span_of(&Interval::around(&-far, &ratio(1, 2)), &whole(1));
+            assert!(span.meet(Span::ALL).is_some() && span.lo == -BOUND, "-2^{bits} {span:?}");
+        }
+        let near = Span { lo: BOUND - 9, hi: BOUND - 8 };
+        for sum in [near.plus(near), near.plus(beyond), beyond.plus(beyond), beyond.minus(Span::at(-7))] {
+            assert_eq!(sum, beyond);
+            assert_eq!(Span::at(0).minus(sum), Span::at(-BOUND));
+        }
+    }
 
     #[test]
     fn roots_are_floors() {
