@@ -32,7 +32,7 @@ pub(crate) fn excluded(case: &Case, certificate: &Certificate, blame: &Blame) ->
     joints.dedup();
     finding = finding.joints(joints);
     finding = evidence(finding, case, certificate);
-    blamed(finding, case.truss, blame)
+    blamed(finding, case.truss, blame, true)
 }
 
 /// The figures that a proof rests on.
@@ -235,9 +235,9 @@ fn count(branch: &Branch) -> (usize, usize) {
 }
 
 /// Adds who may be to blame, and the mend of the likeliest.
-pub(crate) fn blamed(mut finding: Finding, truss: &Truss, blame: &Blame) -> Finding {
+pub(crate) fn blamed(mut finding: Finding, truss: &Truss, blame: &Blame, is_proved: bool) -> Finding {
     if let [first, others @ ..] = blame.singles.as_slice() {
-        let sure = if others.is_empty() && blame.complete {
+        let sure = if others.is_empty() && blame.complete && is_proved {
             "is the figure that is wrong"
         } else {
             "may be the figure that is wrong"
@@ -302,5 +302,5 @@ pub(crate) fn best_misfit(truss: &Truss, worst: &[(FigureId, Rational)], blame: 
     for (id, by) in worst.iter().filter(|(_, by)| !by.is_zero()).take(MOST_NAMED) {
         finding = finding.value(name_of(truss, *id), near(truss, by));
     }
-    blamed(finding, truss, blame)
+    blamed(finding, truss, blame, false)
 }

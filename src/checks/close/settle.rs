@@ -170,13 +170,13 @@ fn open(
     let mut found = match &certificate {
         Some(certificate) => {
             let finding = explain::excluded(&problem.case(&[]), certificate, &blame);
-            let found = answer(CloseState::DoesNotClose, Proof::Exclusion, summary(truss, &blame, &finding.text));
+            let found = answer(CloseState::DoesNotClose, Proof::Exclusion, summary(truss, &blame, true, &finding.text));
             findings.push(finding);
             found
         }
         None => {
             let finding = explain::best_misfit(truss, &worst(problem, trial), &blame);
-            let found = answer(CloseState::NotSettled, Proof::Search, summary(truss, &blame, &finding.text));
+            let found = answer(CloseState::NotSettled, Proof::Search, summary(truss, &blame, false, &finding.text));
             findings.push(finding);
             found
         }
@@ -190,16 +190,17 @@ fn open(
     (found, findings)
 }
 
-fn summary(truss: &Truss, blame: &Blame, otherwise: &str) -> String {
+fn summary(truss: &Truss, blame: &Blame, is_proved: bool, otherwise: &str) -> String {
     match blame.singles.as_slice() {
-        [only] if blame.complete => {
+        [only] if blame.complete && is_proved => {
             format!("{} is wrong: it should read {}", name_of(truss, only.suspect.figure), only.suspect.implied)
         }
         [first, others @ ..] => {
             let first = &first.suspect;
+            let count = others.len() + 1;
             format!(
-                "{} suspects, first {}: it should read {}",
-                others.len() + 1,
+                "{count} {}, first {}: it should read {}",
+                if count == 1 { "suspect" } else { "suspects" },
                 name_of(truss, first.figure),
                 first.implied
             )

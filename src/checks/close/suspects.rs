@@ -34,8 +34,11 @@ pub(crate) fn blame(
     let mut blame = Blame { singles: Vec::new(), pairs: Vec::new(), complete: true };
     // A figure that the set joints contradict is in every proof by itself, so no other can be to blame alone.
     let mut candidates = set_failures(problem);
-    if candidates.is_empty() {
+    let is_set_apart = !candidates.is_empty();
+    if !is_set_apart {
         candidates = leaning_figures(problem, &[], trial);
+        let others = problem.figures_without_rows();
+        candidates.extend(others.into_iter().filter(|id| !candidates.contains(id)).collect::<Vec<_>>());
     }
     candidates.truncate(problem.effort.trials);
     let all = candidates.clone();
@@ -54,7 +57,7 @@ pub(crate) fn blame(
                 let leaning = leaning_figures(problem, &[id], &without);
                 // Where the others close but for a side of the sketch, nothing is leant on.
                 if !leaning.is_empty() && without.mirrored.is_none() {
-                    candidates.retain(|candidate| leaning.contains(candidate));
+                    candidates.retain(|candidate| leaning.contains(candidate) || !problem.has_row(*candidate));
                 }
                 failed.push((id, without));
             }
@@ -153,7 +156,7 @@ fn pairs(
     blame: &mut Blame,
 ) {
     let mut tried = Vec::new();
-    for first in all.iter().take(PAIR_WIDTH) {
+    for first in all.iter().filter(|id| problem.has_row(**id)).take(PAIR_WIDTH) {
         if failed.iter().all(|(id, _)| id != first) {
             failed.push((*first, trial_without(problem, &[*first], start)));
         }

@@ -70,6 +70,20 @@ impl<'t> Problem<'t> {
         }
     }
 
+    /// True when a figure has a row that can be leant on; exact ties are substituted, and what they leave no unknown in has
+    /// none either.
+    pub(crate) fn has_row(&self, id: FigureId) -> bool {
+        self.base.network.rows.iter().any(|row| row.figure == id.index())
+    }
+
+    /// The figures about a loose joint of which nothing can be leant on, so that only leaving them out tells.
+    pub(crate) fn figures_without_rows(&self) -> Vec<FigureId> {
+        let is_loose = |id: &FigureId| !super::meaning::is_all_set(self.truss, &self.truss.figure(*id).kind);
+        let mut has_row = vec![false; self.conditions.len()];
+        self.base.network.rows.iter().for_each(|row| has_row[row.figure] = true);
+        (0..self.conditions.len()).filter(|&index| !has_row[index]).map(FigureId::new).filter(is_loose).collect()
+    }
+
     fn has_tie(&self, id: FigureId) -> bool {
         let is_tie = |c: &Condition| matches!(c.function, Function::Along { .. }) && c.is_exact();
         self.conditions[id.index()].iter().any(is_tie)
@@ -207,6 +221,9 @@ fn lattice_step(truss: &Truss) -> Rational {
 /// A condition that the least worst overshoot leans on, with its share of the heaviest.
 pub(crate) type Leaning = Vec<(Source, f64)>;
 
+/// Figures that contradict exact ties and are tried for a proof.
+const MOST_TIED: usize = 16;
+
 /// A multiplier below this share of the heaviest counts as none.
 const LEAST_SHARE: f64 = 1e-5;
 
@@ -254,12 +271,30 @@ impl Problem<'_> {
         let case = if with_sides { case } else { Case { sides: &[], ..case } };
         let simple = chains::simple(&case);
         simple.or_else(|| {
-            let best = best?;
+            let Some(best) = best else { return self.tied_exclusion(&case, disregarded) };
             let sources: Vec<Source> = self.leaning(disregarded, best).into_iter().map(|(source, _)| source).collect();
             let places = self.places_of(disregarded, best);
             let lean =
                 Lean { sources: &sources, places: &places, scale: &self.base.model.scale, splits: self.effort.splits };
             stress(&case, &lean)
+        })
+    }
+
+    /// A proof where exact ties leave nothing unknown, so that nothing is leant on: some figure contradicts the ties.
+    fn tied_exclusion(&self, case: &Case, disregarded: &[FigureId]) -> Option<Certificate> {
+        self.with_base(disregarded, |base| {
+            if base.model.unknowns > 0 {
+                return None;
+            }
+            let exact = base.model.places(&[]);
+            let places = base.network.places(&[]);
+            let failing = verify::figures_that_fail(self.truss, &exact);
+            failing.into_iter().filter(|id| !disregarded.contains(id)).take(MOST_TIED).find_map(|figure| {
+                let sources: Vec<Source> =
+                    (0..self.conditions[figure.index()].len()).map(|condition| Source { figure, condition }).collect();
+                let lean = Lean { sources: &sources, places: &places, scale: &base.model.scale, splits: 0 };
+                stress(case, &lean)
+            })
         })
     }
 }

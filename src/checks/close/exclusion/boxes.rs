@@ -295,14 +295,17 @@ impl Frame {
         })
     }
 
-    /// The sign that the sketch or the boxes give to the cross product of two ways, if any.
+    /// The sign that the sketch or the boxes give to the cross product of two ways, if any; the product may still be 0.
     pub(crate) fn turn_sign(&self, boxes: &[Way], at: usize, from: usize, to: usize) -> Option<i128> {
         let sketched = self.sides.iter().find_map(|([a, b, c], sign)| {
             let even = [[*a, *b, *c], [*b, *c, *a], [*c, *a, *b]].contains(&[at, from, to]);
             let odd = [[*a, *c, *b], [*c, *b, *a], [*b, *a, *c]].contains(&[at, from, to]);
             if even { Some(*sign) } else { odd.then_some(-sign) }
         });
-        sketched.or_else(|| sign_of(cross(self.way(boxes, at, from), self.way(boxes, at, to))?))
+        sketched.or_else(|| {
+            let cross = cross(self.way(boxes, at, from), self.way(boxes, at, to))?;
+            if cross.lo >= 0 { Some(1) } else { (cross.hi <= 0).then_some(-1) }
+        })
     }
 
     /// The side conditions, by places, each with its sign.
