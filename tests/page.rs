@@ -35,7 +35,7 @@ impl Page {
         for effect in effects {
             if let Effect::Check(ask) = &effect {
                 let answers = report(&ask.truss, &ask.limits);
-                self.state = update(&self.state, Event::Answered(ask.revision, Box::new(answers), String::new())).0;
+                self.state = update(&self.state, Event::Answered(ask.revision, Rc::new(answers), String::new())).0;
             }
             self.effects.push(effect);
         }
@@ -262,9 +262,9 @@ fn answers_to_an_older_truss_are_not_shown_as_the_answers_to_this_one() {
         .iter()
         .find_map(|e| if let Effect::Check(ask) = e { Some(ask.revision) } else { None })
         .expect("a check");
-    let (state, _) = update(&state, Event::Answered(revision - 1, Box::new(old.clone()), String::new()));
+    let (state, _) = update(&state, Event::Answered(revision - 1, old.clone(), String::new()));
     assert!(state.fresh().is_none(), "an answer that comes late is dropped");
-    let (state, _) = update(&state, Event::Answered(revision, Box::new(old), String::new()));
+    let (state, _) = update(&state, Event::Answered(revision, old, String::new()));
     assert!(state.fresh().is_some());
 }
 

@@ -5,6 +5,7 @@ use super::placed::Places;
 use crate::exact::{Interval, Point, Rational, Vector, fraction};
 use crate::truss::{FigureId, JointId, MemberId};
 use serde::{Deserialize, Serialize};
+use std::rc::Rc;
 
 /// Everything that was asked of one truss and answered.
 #[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
@@ -259,9 +260,9 @@ pub struct CutAnswer {
     /// One line under the answer: `8 lengths, 164'-3 5/16" in all`.
     pub summary: String,
     /// One row for each member, in the order of the truss.
-    pub members: Vec<MemberRow>,
+    pub members: Vec<Rc<MemberRow>>,
     /// One row for each joint, in the order of the truss.
-    pub joints: Vec<JointRow>,
+    pub joints: Vec<Rc<JointRow>>,
 }
 
 /// A member's row in the schedule.

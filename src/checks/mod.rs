@@ -11,6 +11,7 @@
 
 mod answers;
 mod chains;
+mod changes;
 mod clear;
 mod close;
 mod cut;
@@ -29,6 +30,7 @@ pub use answers::{
     Answers, ClearAnswer, ClearState, CloseAnswer, CloseState, CutAnswer, JointRow, MemberRow, Motion, NeighbourSpread,
     Proof, Reading, Report, Slip, StandsAnswer, StandsState, Suspect, TrueAnswer, TrueState,
 };
+pub use changes::Changes;
 pub use close::{Effort, Progress, Stage, close, close_watched};
 pub use findings::{Evidence, Finding, Law, Level, Mend, Question, Rule};
 pub use limits::{Adjustable, Limits};

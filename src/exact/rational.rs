@@ -49,18 +49,62 @@ pub fn parse_fraction(text: &str) -> Option<Rational> {
     Some(Rational::new(numerator.parse().ok()?, denominator))
 }
 
-/// Serialisation of a [`Rational`] as its text `p/q`, for `#[serde(with = "fraction")]`.
+/// Serialisation of a [`Rational`], for `#[serde(with = "fraction")]`: in documents that people read as its text `p/q`, else
+/// in short as numbers.
 pub mod fraction {
     use super::{Rational, parse_fraction};
-    use serde::{Deserialize, Deserializer, Serializer, de::Error};
+    use num_bigint::BigInt;
+    use num_integer::Integer;
+    use num_traits::{One, Signed, ToPrimitive};
+    use serde::{Deserialize, Deserializer, Serialize, Serializer, de::Error};
 
-    /// Writes the number as an integer or `p/q`.
-    pub fn serialize<S: Serializer>(value: &Rational, serializer: S) -> Result<S::Ok, S::Error> {
-        serializer.collect_str(value)
+    /// Numerator and denominator, as numbers or as bytes, the least first.
+    #[derive(Serialize, Deserialize)]
+    enum Short {
+        Whole(i64),
+        Parts(i64, i64),
+        Long(Vec<u8>, Vec<u8>),
     }
 
-    /// Reads an integer or `p/q`.
+    impl Short {
+        fn of(value: &Rational) -> Short {
+            match (value.numer().to_i64(), value.denom().to_i64()) {
+                (Some(numer), Some(1)) => Short::Whole(numer),
+                (Some(numer), Some(denom)) => Short::Parts(numer, denom),
+                _ => Short::Long(value.numer().to_signed_bytes_le(), value.denom().to_signed_bytes_le()),
+            }
+        }
+
+        /// The number; `None` where the denominator is not positive.
+        fn value(self) -> Option<Rational> {
+            match self {
+                Short::Whole(numer) => Some(Rational::new_raw(numer.into(), BigInt::one())),
+                Short::Parts(numer, denom) if denom > 0 && i128::from(numer).gcd(&i128::from(denom)) == 1 => {
+                    Some(Rational::new_raw(numer.into(), denom.into()))
+                }
+                Short::Parts(..) => None,
+                Short::Long(numer, denom) => {
+                    let [numer, denom] = [numer, denom].map(|bytes| BigInt::from_signed_bytes_le(&bytes));
+                    denom.is_positive().then(|| Rational::new(numer, denom))
+                }
+            }
+        }
+    }
+
+    /// Writes the number: as an integer or `p/q`, or in short.
+    pub fn serialize<S: Serializer>(value: &Rational, serializer: S) -> Result<S::Ok, S::Error> {
+        match serializer.is_human_readable() {
+            true => serializer.collect_str(value),
+            false => Short::of(value).serialize(serializer),
+        }
+    }
+
+    /// Reads an integer or `p/q`, or the short form.
     pub fn deserialize<'de, D: Deserializer<'de>>(deserializer: D) -> Result<Rational, D::Error> {
+        if !deserializer.is_human_readable() {
+            let short = Short::deserialize(deserializer)?;
+            return short.value().ok_or_else(|| D::Error::custom("a fraction in lowest terms was expected"));
+        }
         let text = std::borrow::Cow::<str>::deserialize(deserializer)?;
         parse_fraction(&text).ok_or_else(|| D::Error::custom(format!("`{text}` is not a fraction p/q")))
     }

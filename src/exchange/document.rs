@@ -200,7 +200,7 @@ fn members(truss: &Truss, cut: &CutAnswer) -> Vec<MemberRow> {
             degrees: row.degrees.clone(),
         }
     };
-    cut.members.iter().map(row).collect()
+    cut.members.iter().map(|each| row(each)).collect()
 }
 
 fn joints(truss: &Truss, cut: &CutAnswer) -> Vec<JointRow> {
@@ -216,5 +216,5 @@ fn joints(truss: &Truss, cut: &CutAnswer) -> Vec<JointRow> {
             spreads: row.spreads.iter().map(spread).collect(),
         }
     };
-    cut.joints.iter().map(row).collect()
+    cut.joints.iter().map(|each| row(each)).collect()
 }

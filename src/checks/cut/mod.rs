@@ -12,6 +12,7 @@ use crate::exact::Rational;
 use crate::truss::Role;
 use num_bigint::BigInt;
 use std::collections::{BTreeMap, HashSet};
+use std::rc::Rc;
 
 /// Answers the question for a placed truss: every member and every joint has its row.
 pub(crate) fn cut(frame: &Frame, chains: &[Chain]) -> (CutAnswer, Vec<Finding>) {
@@ -28,7 +29,7 @@ pub(crate) fn cut(frame: &Frame, chains: &[Chain]) -> (CutAnswer, Vec<Finding>) 
 }
 
 /// `8 lengths, 164'-3 5/16" in all: top chord 44'-8 11/16", bottom chord 40'-0"`.
-fn summary(frame: &Frame, members: &[super::MemberRow], steps: &[BigInt]) -> String {
+fn summary(frame: &Frame, members: &[Rc<super::MemberRow>], steps: &[BigInt]) -> String {
     if members.is_empty() {
         return "no members".into();
     }
@@ -43,7 +44,7 @@ fn summary(frame: &Frame, members: &[super::MemberRow], steps: &[BigInt]) -> Str
 }
 
 /// Members longer than the longest piece of the limits.
-fn too_long(frame: &Frame, members: &[super::MemberRow]) -> Vec<Finding> {
+fn too_long(frame: &Frame, members: &[Rc<super::MemberRow>]) -> Vec<Finding> {
     let limit = frame.limits.longest_piece_in(frame.truss.unit);
     let square = &limit * &limit;
     let mut tally = Tally::new(Rule::TooLong, Level::Note, frame.limits);

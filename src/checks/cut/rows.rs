@@ -7,14 +7,18 @@ use crate::exact::Rational;
 use crate::truss::{JointId, MemberId};
 use num_bigint::BigInt;
 use std::collections::HashMap;
+use std::rc::Rc;
 
 /// One row for each member, and the printed lengths in steps.
-pub(crate) fn member_rows(frame: &Frame) -> (Vec<MemberRow>, Vec<BigInt>) {
+pub(crate) fn member_rows(frame: &Frame) -> (Vec<Rc<MemberRow>>, Vec<BigInt>) {
     let mut known: HashMap<[i64; 2], (MemberRow, BigInt)> = HashMap::new();
     let row = |member: usize| {
-        let Some(steps) = frame.lattice.steps_along(frame.ends[member]) else { return member_row(frame, member) };
+        let Some(steps) = frame.lattice.steps_along(frame.ends[member]) else {
+            let (row, length) = member_row(frame, member);
+            return (Rc::new(row), length);
+        };
         let (row, length) = known.entry(steps).or_insert_with(|| member_row(frame, member));
-        (MemberRow { member: MemberId::new(member), ..row.clone() }, length.clone())
+        (Rc::new(MemberRow { member: MemberId::new(member), ..row.clone() }), length.clone())
     };
     (0..frame.ends.len()).map(row).unzip()
 }
@@ -41,11 +45,11 @@ fn member_row(frame: &Frame, member: usize) -> (MemberRow, BigInt) {
 type Corner = [[i64; 2]; 2];
 
 /// One row for each joint.
-pub(crate) fn joint_rows(frame: &Frame) -> Vec<JointRow> {
+pub(crate) fn joint_rows(frame: &Frame) -> Vec<Rc<JointRow>> {
     let mut known: HashMap<Corner, (Rational, String)> = HashMap::new();
     let mut row = |joint: usize| {
         let spreads = neighbours(frame, joint).map(|(s, t)| neighbour_spread(frame, joint, s, t, &mut known)).collect();
-        JointRow { joint: JointId::new(joint), point: frame.lattice.point(joint).clone(), spreads }
+        Rc::new(JointRow { joint: JointId::new(joint), point: frame.lattice.point(joint).clone(), spreads })
     };
     (0..frame.joint_count()).map(&mut row).collect()
 }

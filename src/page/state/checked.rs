@@ -10,7 +10,7 @@ pub struct Checked {
     /// The truss that was checked.
     pub truss: Rc<Truss>,
     /// The answers.
-    pub report: Report,
+    pub report: Rc<Report>,
     /// The fingerprint of the truss.
     pub fingerprint: String,
 }

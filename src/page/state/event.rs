@@ -31,7 +31,7 @@ pub enum Event {
     /// The first screen was asked for.
     StartAsked,
     /// Answers came back for a revision.
-    Answered(u64, Box<Report>, String),
+    Answered(u64, Rc<Report>, String),
     /// The work on a revision has come so far.
     Progressed(u64, Progress),
     /// The search that is under way was to be stopped.

@@ -38,7 +38,7 @@ fn apply(state: &mut State, event: Event, effects: &mut Vec<Effect>) {
             "this browser keeps nothing for the page: save to a file before you close it".into(),
         ),
         Event::StartAsked => state.source = None,
-        Event::Answered(revision, report, fingerprint) => answered(state, revision, *report, fingerprint),
+        Event::Answered(revision, report, fingerprint) => answered(state, revision, report, fingerprint),
         Event::Progressed(revision, progress) => {
             state.progress = Some(progress).filter(|_| revision == state.revision && state.is_checking());
         }
@@ -183,7 +183,7 @@ fn keep_ids_valid(state: &mut State) {
     state.drag = Drag::None;
 }
 
-fn answered(state: &mut State, revision: u64, report: Report, fingerprint: String) {
+fn answered(state: &mut State, revision: u64, report: Rc<Report>, fingerprint: String) {
     if revision != state.revision {
         return;
     }

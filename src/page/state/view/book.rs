@@ -165,7 +165,8 @@ impl Maker<'_> {
     fn joint(&self, id: JointId) -> RowView {
         let joint = self.truss.joint(id);
         let (row, mark) = (Row::Joint(id), &joint.mark);
-        let spreads = self.checked.and_then(|c| c.report.answers.cut.joints.get(id.index())).map(spread_words);
+        let spreads =
+            self.checked.and_then(|c| c.report.answers.cut.joints.get(id.index())).map(|row| spread_words(row));
         RowView {
             thing: Thing::Joint(id),
             class: self.class(Thing::Joint(id), false),
@@ -189,7 +190,8 @@ impl Maker<'_> {
         let member = self.truss.member(id);
         let (row, mark) = (Row::Member(id), &member.mark);
         let cut = self.checked.and_then(|c| c.report.answers.cut.members.get(id.index()));
-        let number = |text: fn(&MemberRow) -> String| self.shown(cut.map(text).unwrap_or_default(), CellKind::Number);
+        let number =
+            |text: fn(&MemberRow) -> String| self.shown(cut.map(|row| text(row)).unwrap_or_default(), CellKind::Number);
         let end = |id| self.truss.mark(id).to_string();
         RowView {
             thing: Thing::Member(id),
