@@ -37,7 +37,7 @@ pub(super) enum Told {
     /// All of it.
     Whole(Rc<Report>),
     /// What differs from the report that the page has.
-    Changed(Changes),
+    Changed(Box<Changes>),
 }
 
 /// Works out the answers, telling how far it is.
@@ -61,7 +61,7 @@ fn reply(asked: &Asked, tell: &mut dyn FnMut(Progress)) -> Answer {
     let last = LAST.replace(Some((asked.revision, report.clone())));
     let old = last.filter(|(revision, _)| Some(*revision) == asked.known);
     let changes = old.and_then(|(_, old)| Changes::between(&old, &report));
-    Answer { told: changes.map_or(Told::Whole(report), Told::Changed), fingerprint }
+    Answer { told: changes.map_or(Told::Whole(report), |changes| Told::Changed(Box::new(changes))), fingerprint }
 }
 
 /// Answers one message in the worker: the bytes of what is asked in, the bytes of the answers out. Meanwhile `tell` is
