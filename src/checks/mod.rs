@@ -32,6 +32,7 @@ pub use answers::{
 };
 pub use changes::Changes;
 pub use close::{Effort, Progress, Stage, close, close_watched};
+pub use cut::{DimensionString, Equal, Schedule, Total, dimension_strings, schedule};
 pub use findings::{Evidence, Finding, Law, Level, Mend, Question, Rule};
 pub use limits::{Adjustable, Limits};
 pub use placed::{Placed, Places};

@@ -1,7 +1,12 @@
 //! What is cut? The schedule of members and joints, and what the shop has to know of it.
 
+mod dimensions;
 mod rounding;
 mod rows;
+mod schedule;
+
+pub use dimensions::{DimensionString, dimension_strings};
+pub use schedule::{Equal, Schedule, Total, schedule};
 
 use super::answers::CutAnswer;
 use super::chains::Chain;

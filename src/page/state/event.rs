@@ -98,6 +98,10 @@ pub enum Event {
     RedoAsked,
     /// A file was asked for, to be saved.
     SaveAsked,
+    /// The open table was to be saved as comma-separated values.
+    TableSaveAsked,
+    /// The drawing was to be saved alone.
+    DrawingSaveAsked,
     /// A link was asked for.
     LinkAsked,
     /// The link was copied, or could not be.

@@ -53,6 +53,9 @@ pub(super) fn open_demo(state: &mut State, index: usize, effects: &mut Vec<Effec
 
 /// Opens a file; a file that cannot be read leaves the present work untouched.
 pub(super) fn open_file(state: &mut State, name: &str, bytes: &[u8], effects: &mut Vec<Effect>) {
+    if name.to_lowercase().ends_with(".csv") {
+        return take_table(state, name, bytes, effects);
+    }
     match read_truss(bytes) {
         Ok(truss) => open(state, truss, Source::File(name.to_string()), effects),
         Err(error) => say(state, Tone::Refused, format!("{name} could not be read: {error}")),
@@ -93,6 +96,35 @@ pub(super) fn open(state: &mut State, truss: Truss, source: Source, effects: &mu
     start_checks(state, effects);
 }
 
+/// Takes a table in as one change of the present truss; one with an error in any row changes nothing.
+fn take_table(state: &mut State, name: &str, bytes: &[u8], effects: &mut Vec<Effect>) {
+    let edit = std::str::from_utf8(bytes)
+        .map_err(|_| "it is no text in UTF-8".to_string())
+        .and_then(|text| super::csv::csv_edit(&state.truss, text));
+    match edit {
+        Ok((edit, label)) => {
+            if super::update::change(state, &edit, label.clone(), effects) {
+                say(state, Tone::Done, format!("{name}: {label}."));
+                super::update::fit(state);
+            }
+        }
+        Err(error) => say(state, Tone::Refused, format!("{name} could not be taken in: {error}")),
+    }
+}
+
+/// Saves the open table as comma-separated values.
+pub(super) fn save_table(state: &State, effects: &mut Vec<Effect>) {
+    let table = state.book.title().to_ascii_lowercase();
+    let name = format!("{}-{table}.csv", plain_name(&state.truss.title));
+    effects.push(Effect::Save { name, text: super::csv::csv_text(state, state.book) });
+}
+
+/// Saves the drawing alone.
+pub(super) fn save_drawing(state: &State, effects: &mut Vec<Effect>) {
+    let name = format!("{}.svg", plain_name(&state.truss.title));
+    effects.push(Effect::Save { name, text: super::view::svg_text(state) });
+}
+
 /// Saves the truss to a file named after its title.
 pub(super) fn save(state: &State, effects: &mut Vec<Effect>) {
     effects.push(Effect::Save { name: file_name(&state.truss.title), text: write_truss(&state.truss) });
@@ -112,6 +144,10 @@ pub(super) fn make_link(state: &mut State, effects: &mut Vec<Effect>) {
 
 /// A file name made of a title: letters, digits and dashes.
 fn file_name(title: &str) -> String {
+    format!("{}.truss.json", plain_name(title))
+}
+
+fn plain_name(title: &str) -> String {
     let mut name = String::new();
     for c in title.chars().take(60) {
         match c {
@@ -121,7 +157,7 @@ fn file_name(title: &str) -> String {
         }
     }
     let name = name.trim_end_matches('-');
-    format!("{}.truss.json", if name.is_empty() { "truss" } else { name })
+    if name.is_empty() { "truss".into() } else { name.into() }
 }
 
 #[cfg(test)]

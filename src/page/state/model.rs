@@ -133,6 +133,10 @@ pub enum Book {
     Figures,
     /// Supports.
     Supports,
+    /// Equal members together, with totals.
+    Schedule,
+    /// Dimension strings that add up.
+    Strings,
 }
 
 /// Whether pressing the board draws.
@@ -326,7 +330,8 @@ impl State {
 
 impl Book {
     /// Every table, in order.
-    pub const ALL: [Book; 4] = [Book::Joints, Book::Members, Book::Figures, Book::Supports];
+    pub const ALL: [Book; 6] =
+        [Book::Joints, Book::Members, Book::Figures, Book::Supports, Book::Schedule, Book::Strings];
 
     /// Its title.
     pub fn title(self) -> &'static str {
@@ -335,6 +340,8 @@ impl Book {
             Book::Members => "Members",
             Book::Figures => "Figures",
             Book::Supports => "Supports",
+            Book::Schedule => "Schedule",
+            Book::Strings => "Strings",
         }
     }
 }

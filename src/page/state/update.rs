@@ -98,6 +98,8 @@ fn apply(state: &mut State, event: Event, effects: &mut Vec<Effect>) {
         Event::UndoAsked => go_back(state, effects),
         Event::RedoAsked => go_forth(state, effects),
         Event::SaveAsked => files::save(state, effects),
+        Event::TableSaveAsked => files::save_table(state, effects),
+        Event::DrawingSaveAsked => files::save_drawing(state, effects),
         Event::LinkAsked => files::make_link(state, effects),
         Event::LinkCopied(done) => link_copied(state, done),
         Event::LinkClosed => state.link = None,
@@ -189,7 +191,7 @@ fn answered(state: &mut State, revision: u64, report: Rc<Report>, fingerprint: S
     }
     state.progress = None;
     let findings = report.findings.len();
-    state.checked = Some(Rc::new(Checked { truss: state.truss.clone(), report, fingerprint }));
+    state.checked = Some(Rc::new(Checked::new(state.truss.clone(), report, fingerprint)));
     state.open_finding = state.open_finding.filter(|&index| index < findings);
     if state.fitted && state.drag == Drag::None && state.pen == Pen::Up {
         fit(state);

@@ -40,6 +40,7 @@ pub(super) fn Board(props: &BoardProps) -> Html {
                 <button class="tool" onclick={act(PageEvent::FitAsked)}>{ "Show all" }</button>
                 <button class="tool" aria-label="larger" onclick={act(PageEvent::ZoomAsked(1.25))}>{ "+" }</button>
                 <button class="tool" aria-label="smaller" onclick={act(PageEvent::ZoomAsked(0.8))}>{ "−" }</button>
+                if !props.empty { <button class="tool" id="save-drawing" onclick={act(PageEvent::DrawingSaveAsked)}>{ "Save drawing (SVG)" }</button> }
                 if props.has_layout {
                     <button class="tool" id="shown" onclick={act(PageEvent::ShownToggled)}>{ &props.drawing.caption }<kbd>{ "K" }</kbd></button>
                 } else if !props.drawing.caption.is_empty() {

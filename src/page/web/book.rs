@@ -24,6 +24,7 @@ pub(super) fn Book(props: &BookProps) -> Html {
         <section class="book" aria-label="tables">
             <div class="tabs" role="tablist">
                 { for Table::ALL.iter().zip(view.counts).map(|(&table, count)| tab(table, count, view.book, on)) }
+                <button class="quiet save-table" onclick={on.reform(|_: MouseEvent| PageEvent::TableSaveAsked)}>{ "Save this table (CSV)" }</button>
             </div>
             <div class="table-place">
                 <table class={format!("table-{}", view.book.title().to_ascii_lowercase())}>
@@ -37,34 +38,48 @@ pub(super) fn Book(props: &BookProps) -> Html {
     }
 }
 
-fn tab(table: Table, count: usize, open: Table, on: &Callback<PageEvent>) -> Html {
+fn tab(table: Table, count: Option<usize>, open: Table, on: &Callback<PageEvent>) -> Html {
     let choose = on.reform(move |_: MouseEvent| PageEvent::BookChosen(table));
     html! {
         <button class={if table == open { "tab open" } else { "tab" }} role="tab" aria-selected={(table == open).to_string()} onclick={choose}>
-            { table.title() }<span class="count">{ count }</span>
+            { table.title() }if let Some(count) = count { <span class="count">{ count }</span> }
         </button>
     }
 }
 
 fn table_row(props: &BookProps, index: usize, row: &RowView) -> Html {
-    let (on, thing) = (&props.on, row.thing);
-    let enter = on.reform(move |_: MouseEvent| PageEvent::PointedAt(Some(thing)));
+    let on = &props.on;
+    let first = row.things.first().copied();
+    let enter = on.reform(move |_: MouseEvent| PageEvent::PointedAt(first));
     let leave = on.reform(|_: MouseEvent| PageEvent::PointedAt(None));
-    let choose = on.reform(move |event: MouseEvent| PageEvent::ThingChosen(thing, event.shift_key()));
+    let choose = {
+        let (on, things) = (on.clone(), row.things.clone());
+        Callback::from(move |event: MouseEvent| {
+            for (place, &thing) in things.iter().enumerate() {
+                on.emit(PageEvent::ThingChosen(thing, place > 0 || event.shift_key()));
+            }
+        })
+    };
     let remove = {
         let on = on.clone();
         Callback::from(move |event: MouseEvent| {
             event.stop_propagation();
-            on.emit(PageEvent::ThingChosen(thing, false));
-            on.emit(PageEvent::RemoveAsked);
+            if let Some(thing) = first {
+                on.emit(PageEvent::ThingChosen(thing, false));
+                on.emit(PageEvent::RemoveAsked);
+            }
         })
     };
-    let pointed = (props.pointed == Some(thing)).then_some("pointed");
+    let pointed = (first.is_some() && props.pointed == first).then_some("pointed");
     let name = row.cells.first().map(|cell| cell.text.clone()).unwrap_or_default();
     html! {
-        <tr class={classes!(row.class, pointed)} key={format!("{thing:?}")} onmouseenter={enter} onmouseleave={leave} onclick={choose}>
+        <tr class={classes!(row.class, pointed)} key={format!("{index} {first:?}")} onmouseenter={enter} onmouseleave={leave} onclick={choose}>
             { for row.cells.iter().enumerate().map(|(column, cell)| table_cell(props, (index, column), cell)) }
-            <td class="narrow"><button class="quiet remove" aria-label={format!("remove {name}")} onclick={remove}>{ "×" }</button></td>
+            <td class="narrow">
+                if row.can_remove {
+                    <button class="quiet remove" aria-label={format!("remove {name}")} onclick={remove}>{ "×" }</button>
+                }
+            </td>
         </tr>
     }
 }

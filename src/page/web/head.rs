@@ -132,7 +132,7 @@ pub(super) fn OpenFile(props: &OpenProps) -> Html {
     html! {
         <>
             <button class={props.class} onclick={press}>{ props.words }</button>
-            <input ref={input} class="hidden" type="file" accept=".json,application/json" aria-label="open a truss file" tabindex="-1" {onchange} />
+            <input ref={input} class="hidden" type="file" accept=".json,.csv,application/json,text/csv" aria-label="open a truss file" tabindex="-1" {onchange} />
         </>
     }
 }

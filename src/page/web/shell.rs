@@ -111,7 +111,11 @@ pub(super) fn read_file(file: web_sys::File, on: Callback<PageEvent>) {
 fn save(name: &str, text: &str) {
     let saved = (|| -> Result<(), JsValue> {
         let options = BlobPropertyBag::new();
-        options.set_type("application/json");
+        options.set_type(match name.rsplit_once('.').map(|(_, end)| end) {
+            Some("csv") => "text/csv",
+            Some("svg") => "image/svg+xml",
+            _ => "application/json",
+        });
         let parts = js_sys::Array::of1(&JsValue::from_str(text));
         let blob = web_sys::Blob::new_with_str_sequence_and_options(&parts, &options)?;
         let address = web_sys::Url::create_object_url_with_blob(&blob)?;

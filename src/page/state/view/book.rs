@@ -1,7 +1,7 @@
 //! The book: joints, members, figures and supports as tables.
 
 use super::evidence::marks;
-use crate::checks::{JointRow, MemberRow};
+use crate::checks::{Equal, JointRow, MemberRow, Schedule};
 use crate::measure::pretty;
 use crate::page::state::{Book, Cell, Checked, Column, Row, State, Thing};
 use crate::truss::{FigureId, JointId, MemberId, SupportId, SupportKind, Truss};
@@ -14,8 +14,8 @@ pub const PAGE_ROWS: usize = 200;
 pub struct BookView {
     /// Which.
     pub book: Book,
-    /// How many of each: joints, members, figures, supports.
-    pub counts: [usize; 4],
+    /// How many of each there are, where it is known without working it out.
+    pub counts: [Option<usize>; 6],
     /// The rows shown.
     pub rows: Vec<RowView>,
     /// The first row shown.
@@ -31,8 +31,10 @@ pub struct BookView {
 /// One row.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub struct RowView {
-    /// What it is about.
-    pub thing: Thing,
+    /// What it is about; several things where they are taken together.
+    pub things: Vec<Thing>,
+    /// Whether it stands for something that can be removed here.
+    pub can_remove: bool,
     /// Its style: selected, at fault.
     pub class: &'static str,
     /// Its cells.
@@ -81,19 +83,25 @@ pub fn column_titles(book: Book) -> &'static [&'static str] {
         Book::Members => &["member", "from", "to", "role", "length", "bevel", "degrees", "quadrance"],
         Book::Figures => &["figure", "kind", "between", "printed", "to a step of", "the places give", "misfit"],
         Book::Supports => &["joint", "kind", "holds right", "holds up"],
+        Book::Schedule => &["off", "role", "length", "bevel", "degrees", "quadrance", "members"],
+        Book::Strings => &["along", "string as printed, adding up exactly", "roundings", "joints"],
     }
 }
 
 /// The open table.
 pub fn book_view(state: &State) -> BookView {
     let truss = &*state.truss;
-    let counts = [truss.joints.len(), truss.members.len(), truss.figures.len(), truss.supports.len()];
+    let checked = state.fresh();
     let total = match state.book {
-        Book::Joints => counts[0],
-        Book::Members => counts[1],
-        Book::Figures => counts[2],
-        Book::Supports => counts[3],
+        Book::Joints => truss.joints.len(),
+        Book::Members => truss.members.len(),
+        Book::Figures => truss.figures.len(),
+        Book::Supports => truss.supports.len(),
+        Book::Schedule => checked.map_or(0, |c| c.schedule().groups.len() + c.schedule().totals.len()),
+        Book::Strings => checked.map_or(0, |c| c.strings().len()),
     };
+    let counts = [truss.joints.len(), truss.members.len(), truss.figures.len(), truss.supports.len()].map(Some);
+    let counts = [counts[0], counts[1], counts[2], counts[3], None, None];
     let last_start = total.saturating_sub(1) / PAGE_ROWS * PAGE_ROWS;
     let start = (state.book_start / PAGE_ROWS * PAGE_ROWS).min(last_start);
     let page = start..(start + PAGE_ROWS).min(total);
@@ -122,7 +130,7 @@ impl Maker<'_> {
             Book::Joints => (Row::NewJoint, "L2  13'-4\"  0"),
             Book::Members => (Row::NewMember, "L0 U1 top chord"),
             Book::Supports => (Row::NewSupport, "L0 pin"),
-            Book::Figures => return (None, ""),
+            Book::Figures | Book::Schedule | Book::Strings => return (None, ""),
         };
         let view = self.entered(row, Column::Line, String::new(), CellKind::Text, "add a line".into());
         (Some(view), example)
@@ -134,6 +142,64 @@ impl Maker<'_> {
             Book::Members => self.member(MemberId::new(index)),
             Book::Figures => self.figure(FigureId::new(index)),
             Book::Supports => self.support(SupportId::new(index)),
+            Book::Schedule => self.scheduled(index),
+            Book::Strings => self.string(index),
+        }
+    }
+
+    /// A group of equal members, or, after these, the total of a role.
+    fn scheduled(&self, index: usize) -> RowView {
+        let empty = Schedule::default();
+        let schedule = self.checked.map_or(&empty, Checked::schedule);
+        let shown = |text: String, kind: CellKind| self.shown(text, kind);
+        match (schedule.groups.get(index), schedule.totals.get(index.wrapping_sub(schedule.groups.len()))) {
+            (Some(group), _) => RowView {
+                things: group.members.iter().map(|&id| Thing::Member(id)).collect(),
+                can_remove: false,
+                class: "row",
+                cells: vec![
+                    shown(off_words(group), CellKind::Words),
+                    shown(group.role.name().into(), CellKind::Words),
+                    shown(group.length.clone(), CellKind::Number),
+                    shown(group.bevel.clone(), CellKind::Number),
+                    shown(group.degrees.clone(), CellKind::Number),
+                    shown(group.quadrance.to_string(), CellKind::Number),
+                    shown(member_marks(self.truss, &group.members), CellKind::Words),
+                ],
+            },
+            (None, Some(total)) => RowView {
+                things: Vec::new(),
+                can_remove: false,
+                class: "row total",
+                cells: vec![
+                    shown(total.count.to_string(), CellKind::Words),
+                    shown(format!("{} in all", total.role.name()), CellKind::Words),
+                    shown(total.length.clone(), CellKind::Number),
+                ],
+            },
+            _ => RowView { things: Vec::new(), can_remove: false, class: "row", cells: Vec::new() },
+        }
+    }
+
+    fn string(&self, index: usize) -> RowView {
+        let Some(string) = self.checked.and_then(|checked| checked.strings().get(index)) else {
+            return RowView { things: Vec::new(), can_remove: false, class: "row", cells: Vec::new() };
+        };
+        let roundings = match string.moved.len() {
+            0 => "each value rounds to itself".to_string(),
+            1 => "1 value is printed a step off so that it adds up".to_string(),
+            n => format!("{n} values are printed a step off so that it adds up"),
+        };
+        RowView {
+            things: string.joints.iter().map(|&id| Thing::Joint(id)).collect(),
+            can_remove: false,
+            class: "row",
+            cells: vec![
+                self.shown(string.along.into(), CellKind::Words),
+                self.shown(string.text.clone(), CellKind::Number),
+                self.shown(roundings, CellKind::Words),
+                self.shown(chain_words(self.truss, &string.joints), CellKind::Words),
+            ],
         }
     }
 
@@ -168,7 +234,8 @@ impl Maker<'_> {
         let spreads =
             self.checked.and_then(|c| c.report.answers.cut.joints.get(id.index())).map(|row| spread_words(row));
         RowView {
-            thing: Thing::Joint(id),
+            things: vec![Thing::Joint(id)],
+            can_remove: true,
             class: self.class(Thing::Joint(id), false),
             cells: vec![
                 self.entered(row, Column::Mark, mark.clone(), CellKind::Text, format!("mark of joint {mark}")),
@@ -194,7 +261,8 @@ impl Maker<'_> {
             |text: fn(&MemberRow) -> String| self.shown(cut.map(|row| text(row)).unwrap_or_default(), CellKind::Number);
         let end = |id| self.truss.mark(id).to_string();
         RowView {
-            thing: Thing::Member(id),
+            things: vec![Thing::Member(id)],
+            can_remove: true,
             class: self.class(Thing::Member(id), false),
             cells: vec![
                 self.entered(row, Column::Mark, mark.clone(), CellKind::Text, format!("mark of member {mark}")),
@@ -227,7 +295,8 @@ impl Maker<'_> {
         };
         let step = figure.step.as_ref().map(|step| step.text.clone()).unwrap_or_default();
         RowView {
-            thing: Thing::Figure(id),
+            things: vec![Thing::Figure(id)],
+            can_remove: true,
             class: self.class(Thing::Figure(id), suspect || reading.is_some_and(|reading| !reading.holds)),
             cells: vec![
                 self.entered(row, Column::Mark, mark.clone(), CellKind::Text, format!("mark of figure {mark}")),
@@ -255,10 +324,39 @@ impl Maker<'_> {
         let kind = if support.kind == SupportKind::Pin { "pin" } else { "roller" };
         let kind = self.entered(row, Column::Kind, kind.into(), CellKind::Choice(&KINDS), format!("support at {mark}"));
         RowView {
-            thing: Thing::Support(id),
+            things: vec![Thing::Support(id)],
+            can_remove: true,
             class: self.class(Thing::Support(id), false),
             cells: [self.shown(mark, CellKind::Words), kind].into_iter().chain(normals).collect(),
         }
+    }
+}
+
+/// `4 off`, with both hands where there are.
+fn off_words(group: &Equal) -> String {
+    match group.hands {
+        [right, left] if right > 0 && left > 0 => {
+            format!("{} off: {right} and {left} opposite hand", group.members.len())
+        }
+        _ => format!("{} off", group.members.len()),
+    }
+}
+
+/// Members named before it is said how many more there are.
+const MOST_MARKS: usize = 40;
+
+fn member_marks(truss: &Truss, members: &[MemberId]) -> String {
+    let named: Vec<&str> = members.iter().take(MOST_MARKS).map(|id| truss.member(*id).mark.as_str()).collect();
+    match members.len().saturating_sub(MOST_MARKS) {
+        0 => named.join(" "),
+        more => format!("{} and {more} more", named.join(" ")),
+    }
+}
+
+fn chain_words(truss: &Truss, joints: &[JointId]) -> String {
+    match joints {
+        [first, .., last] if joints.len() > 12 => format!("{} … {}", truss.mark(*first), truss.mark(*last)),
+        _ => joints.iter().map(|id| truss.mark(*id)).collect::<Vec<_>>().join(" "),
     }
 }
 

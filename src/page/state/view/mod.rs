@@ -10,6 +10,7 @@ mod misfits;
 mod overlay;
 mod path;
 mod sheet;
+mod svg;
 
 pub use answers::{AnswerTile, Sign, WorkView, answer_tiles, work_view};
 pub use board::{DrawingView, Turned, drawing_view};
@@ -19,6 +20,7 @@ pub use labels::{Anchor, LabelView};
 pub use overlay::{OverlayView, overlay_view};
 pub use path::PathView;
 pub use sheet::{PAPER, SheetTable, SheetView, sheet_view};
+pub use svg::svg_text;
 
 use super::cells::{Cell, Column, Row};
 use super::model::{Source, State};

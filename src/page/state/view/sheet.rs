@@ -50,7 +50,7 @@ pub fn sheet_view(state: &State) -> Option<SheetView> {
     if truss.members.len() + truss.figures.len() + truss.joints.len() > MOST {
         return None;
     }
-    let (drawing, height) = drawing(state);
+    let (drawing, height) = paper_drawing(state);
     let step = Sheet::of(truss.unit, &truss.step.value).exact_words(&truss.step.value);
     Some(SheetView {
         title: super::head_view(state).title,
@@ -68,7 +68,7 @@ pub fn sheet_view(state: &State) -> Option<SheetView> {
 }
 
 /// The drawing alone, with nothing selected or opened, fitted to the paper.
-fn drawing(state: &State) -> (DrawingView, f64) {
+pub(super) fn paper_drawing(state: &State) -> (DrawingView, f64) {
     let wide = Camera::fitted(&state.places, (PAPER, 10_000.0));
     let heights = state.places.iter().map(|&place| wide.at(place).y);
     let span = heights.clone().fold(f64::MIN, f64::max) - heights.fold(f64::MAX, f64::min);

@@ -1,0 +1,89 @@
+//! The schedule: equal members together, and totals by role.
+
+use super::super::answers::CutAnswer;
+use crate::exact::{Rational, Surd};
+use crate::measure::Sheet;
+use crate::truss::{MemberId, Role, Truss};
+use num_bigint::BigInt;
+use num_traits::{Signed, Zero};
+use std::collections::BTreeMap;
+
+/// Members of one role that are exactly equal: in length, and in slope apart from its sense.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Equal {
+    /// What they are for.
+    pub role: Role,
+    /// The members, in the order of the truss.
+    pub members: Vec<MemberId>,
+    /// How many of them rise to the right and to the left: where both are more than none, these are opposite hands. Both
+    /// are none for members that are level or plumb.
+    pub hands: [usize; 2],
+    /// The working length, printed to the sheet's step; `~` before one that is rounded.
+    pub length: String,
+    /// The bevel, printed.
+    pub bevel: String,
+    /// Degrees from 0 to 90, printed.
+    pub degrees: String,
+    /// The squared working length, exact.
+    pub quadrance: Rational,
+}
+
+/// The total of one role.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Total {
+    /// The role.
+    pub role: Role,
+    /// How many members.
+    pub count: usize,
+    /// Their printed lengths added up, printed.
+    pub length: String,
+}
+
+/// The schedule of a truss.
+#[derive(Clone, Debug, Default, PartialEq, Eq)]
+pub struct Schedule {
+    /// Groups of equal members: by role, longest first.
+    pub groups: Vec<Equal>,
+    /// Totals of the roles that have members.
+    pub totals: Vec<Total>,
+}
+
+/// The schedule, from the rows of the members; empty when the rows are not those of the truss.
+pub fn schedule(truss: &Truss, cut: &CutAnswer) -> Schedule {
+    if cut.members.len() != truss.members.len() {
+        return Schedule::default();
+    }
+    let sheet = Sheet::of(truss.unit, &truss.step.value);
+    let mut groups: BTreeMap<(Role, Rational, Rational), Equal> = BTreeMap::new();
+    let mut sums: BTreeMap<Role, (usize, Rational)> = BTreeMap::new();
+    for (member, row) in truss.members.iter().zip(&cut.members) {
+        // The longest first.
+        let key = (member.role, -&row.quadrance, row.rise.abs());
+        let group = groups.entry(key).or_insert_with(|| Equal {
+            role: member.role,
+            members: Vec::new(),
+            hands: [0, 0],
+            length: if row.exact { row.length.clone() } else { format!("~ {}", row.length) },
+            bevel: row.bevel.clone(),
+            degrees: row.degrees.clone(),
+            quadrance: row.quadrance.clone(),
+        });
+        group.members.push(row.member);
+        let sense = &row.run * &row.rise;
+        if !sense.is_zero() {
+            group.hands[usize::from(sense.is_negative())] += 1;
+        }
+        let sum = sums.entry(member.role).or_insert_with(|| (0, Rational::zero()));
+        sum.0 += 1;
+        sum.1 += printed(&row.quadrance, &truss.step.value);
+    }
+    let total = |(role, (count, sum)): (Role, (usize, Rational))| Total { role, count, length: sheet.length(&sum) };
+    Schedule { groups: groups.into_values().collect(), totals: sums.into_iter().map(total).collect() }
+}
+
+/// The length as it is printed; on a sheet without a step to a 1/1000 of its unit.
+fn printed(quadrance: &Rational, step: &Rational) -> Rational {
+    let step = if step.is_positive() { step.clone() } else { crate::exact::ratio(1, 1000) };
+    let steps = Surd::of_quadrance(quadrance).and_then(|root| root.nearest(&step)).map(|n| n.steps);
+    step * Rational::from_integer(steps.unwrap_or_else(BigInt::zero))
+}
