@@ -7,7 +7,7 @@ use super::meaning::{Axis, Condition, Function, leg};
 use super::search::model::Model;
 use super::trial::Problem;
 use crate::exact::modular::{Field, PRIMES, Scatter};
-use crate::exact::{Point, Rational, Surd, Vector, whole};
+use crate::exact::{Point, Rational, Surd, Vector, order, whole};
 use crate::truss::JointId;
 use num_traits::{Signed, Zero};
 use std::collections::BTreeMap;
@@ -253,7 +253,7 @@ pub(crate) fn weak(problem: &Problem, places: &[Point]) -> Vec<Weak> {
         let model = &base.model;
         let deviations = base.network.deviations(&base.floats_of(places));
         let mut sorted: Vec<f64> = deviations.iter().copied().filter(|d| d.is_finite()).collect();
-        sorted.sort_by(f64::total_cmp);
+        order::sort_by(&mut sorted, f64::total_cmp);
         let usual = sorted.get(sorted.len().saturating_sub(1) / 2).copied().unwrap_or(0.0) * WEAK_TIMES;
         let least = problem.step.abs() * whole(WEAK_STEPS);
         let mut found: Vec<Weak> = Vec::new();

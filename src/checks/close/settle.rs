@@ -8,7 +8,7 @@ use super::suspects::{Blame, blame};
 use super::trial::{Problem, Trial};
 use super::{Effort, Progress, Stage, answer, misfits, readings, told_here, words};
 use crate::checks::{CloseAnswer, CloseState, Finding, Level, Proof, Rule};
-use crate::exact::{Point, Rational, nearest_multiple, whole};
+use crate::exact::{Point, Rational, nearest_multiple, order, whole};
 use crate::truss::{Edit, FigureId, JointId, Truss};
 
 /// Answers for a truss with loose joints.
@@ -233,7 +233,7 @@ fn worst(problem: &Problem, trial: &Trial) -> Vec<(FigureId, Rational)> {
                 found.push((id, over));
             }
         }
-        found.sort_by(|a, b| b.1.total_cmp(&a.1).then(a.0.cmp(&b.0)));
+        order::sort_by(&mut found, |a, b| b.1.total_cmp(&a.1).then(a.0.cmp(&b.0)));
         let in_unit = |over: f64| Rational::from_float(over).unwrap_or_default() * &base.model.scale;
         found.into_iter().map(|(id, over)| (id, in_unit(over))).collect()
     })

@@ -6,7 +6,7 @@
 //! [`FLATNESS`] says nothing: a rough sketch may well have that wrong.
 
 use super::meaning::FLATNESS;
-use crate::exact::{Orientation, Rational, orientation, quadrance, whole};
+use crate::exact::{Orientation, Rational, order, orientation, quadrance, whole};
 use crate::truss::{FigureKind, JointId, Truss};
 use std::collections::BTreeSet;
 
@@ -48,7 +48,7 @@ pub(crate) fn sides(truss: &Truss) -> Vec<Side> {
         }
         for triangle in triangles {
             let mut corners = triangle;
-            corners.sort_unstable();
+            order::sort(&mut corners);
             if seen.insert(corners) {
                 found.extend(sketched(truss, triangle));
             }

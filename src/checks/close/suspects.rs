@@ -7,6 +7,7 @@ use super::implied::{Accused, accused};
 use super::meaning::is_all_set;
 use super::trial::{Problem, Trial};
 use super::{Progress, Stage};
+use crate::exact::order;
 use crate::truss::FigureId;
 
 /// What was found out about blame.
@@ -126,7 +127,7 @@ fn next(candidates: &mut Vec<FigureId>) -> Option<FigureId> {
 /// Those explained by a slip first, then by how likely and how far outside they are. A slip that explains only a less
 /// likely figure than one without is taken for chance, and not told.
 fn put_in_order(singles: &mut [Accused]) {
-    singles.sort_by(|a, b| {
+    order::sort_by(singles, |a, b| {
         b.worth.total_cmp(&a.worth).then(b.outside.total_cmp(&a.outside)).then(a.suspect.figure.cmp(&b.suspect.figure))
     });
     let leading = singles.iter().take_while(|accused| accused.suspect.slip.is_some()).count();
@@ -190,5 +191,5 @@ fn pairs(
         }
     }
     let worth = |pair: &[Accused; 2]| pair[0].worth + pair[1].worth;
-    blame.pairs.sort_by(|a, b| worth(b).total_cmp(&worth(a)));
+    order::sort_by(&mut blame.pairs, |a, b| worth(b).total_cmp(&worth(a)));
 }

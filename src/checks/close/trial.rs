@@ -12,7 +12,7 @@ use super::search::worst::Best;
 use super::sides::{Side, sides};
 use super::verify;
 use super::{Effort, words};
-use crate::exact::{Point, Rational};
+use crate::exact::{Point, Rational, order};
 use crate::truss::{FigureId, Truss};
 use num_traits::Signed;
 
@@ -244,7 +244,7 @@ impl Problem<'_> {
             };
             let mut leaning: Leaning = best.multipliers.iter().enumerate().map(share).collect();
             leaning.retain(|(_, share)| *share > LEAST_SHARE);
-            leaning.sort_by(|a, b| b.1.total_cmp(&a.1).then(a.0.cmp(&b.0)));
+            order::sort_by(&mut leaning, |a, b| b.1.total_cmp(&a.1).then(a.0.cmp(&b.0)));
             leaning
         })
     }

@@ -1,12 +1,11 @@
 //! The schedule: equal members together, and totals by role.
 
-use super::super::answers::CutAnswer;
-use crate::exact::{Rational, Surd};
+use super::super::answers::{CutAnswer, MemberRow};
+use crate::exact::{Rational, Surd, order};
 use crate::measure::Sheet;
 use crate::truss::{MemberId, Role, Truss};
 use num_bigint::BigInt;
 use num_traits::{Signed, Zero};
-use std::collections::BTreeMap;
 
 /// Members of one role that are exactly equal: in length, and in slope apart from its sense.
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -54,31 +53,48 @@ pub fn schedule(truss: &Truss, cut: &CutAnswer) -> Schedule {
         return Schedule::default();
     }
     let sheet = Sheet::of(truss.unit, &truss.step.value);
-    let mut groups: BTreeMap<(Role, Rational, Rational), Equal> = BTreeMap::new();
-    let mut sums: BTreeMap<Role, (usize, Rational)> = BTreeMap::new();
-    for (member, row) in truss.members.iter().zip(&cut.members) {
-        // The longest first.
-        let key = (member.role, -&row.quadrance, row.rise.abs());
-        let group = groups.entry(key).or_insert_with(|| Equal {
-            role: member.role,
-            members: Vec::new(),
-            hands: [0, 0],
-            length: if row.exact { row.length.clone() } else { format!("~ {}", row.length) },
-            bevel: row.bevel.clone(),
-            degrees: row.degrees.clone(),
-            quadrance: row.quadrance.clone(),
-        });
+    let role = |row: &MemberRow| truss.member(row.member).role;
+    let mut rows: Vec<&MemberRow> = cut.members.iter().map(|row| &**row).collect();
+    let alike = |a: &MemberRow, b: &MemberRow| {
+        let by_size = b.quadrance.cmp(&a.quadrance).then_with(|| a.rise.abs().cmp(&b.rise.abs()));
+        role(a).cmp(&role(b)).then(by_size)
+    };
+    order::sort_by(&mut rows, |a, b| alike(a, b).then(a.member.cmp(&b.member)));
+    let mut found = Schedule::default();
+    let mut sum = Rational::zero();
+    for (index, row) in rows.iter().enumerate() {
+        let is_new = index == 0 || alike(rows[index - 1], row).is_ne();
+        if is_new {
+            found.groups.push(group(role(row), row));
+        }
+        let Some(group) = found.groups.last_mut() else { continue };
         group.members.push(row.member);
         let sense = &row.run * &row.rise;
         if !sense.is_zero() {
             group.hands[usize::from(sense.is_negative())] += 1;
         }
-        let sum = sums.entry(member.role).or_insert_with(|| (0, Rational::zero()));
-        sum.0 += 1;
-        sum.1 += printed(&row.quadrance, &truss.step.value);
+        sum += printed(&row.quadrance, &truss.step.value);
+        let is_last = rows.get(index + 1).is_none_or(|next| role(next) != role(row));
+        if is_last {
+            let count = found.groups.iter().filter(|g| g.role == role(row)).map(|g| g.members.len()).sum();
+            found.totals.push(Total { role: role(row), count, length: sheet.length(&sum) });
+            sum = Rational::zero();
+        }
     }
-    let total = |(role, (count, sum)): (Role, (usize, Rational))| Total { role, count, length: sheet.length(&sum) };
-    Schedule { groups: groups.into_values().collect(), totals: sums.into_iter().map(total).collect() }
+    found
+}
+
+/// A group that is still without members.
+fn group(role: Role, row: &MemberRow) -> Equal {
+    Equal {
+        role,
+        members: Vec::new(),
+        hands: [0, 0],
+        length: if row.exact { row.length.clone() } else { format!("~ {}", row.length) },
+        bevel: row.bevel.clone(),
+        degrees: row.degrees.clone(),
+        quadrance: row.quadrance.clone(),
+    }
 }
 
 /// The length as it is printed; on a sheet without a step to a 1/1000 of its unit.

@@ -15,6 +15,7 @@
 use super::matrix::{Matrix, NOWHERE, Row};
 use super::order::{Neighbours, order};
 use crate::exact::modular::{Field, Scatter};
+use crate::exact::order as sorting;
 
 /// Entries (blocks) of L beyond which the elimination is not begun: about 240 MB.
 const MOST_BLOCKS: usize = 12_000_000;
@@ -157,7 +158,7 @@ fn neighbours(count: usize, rows: &[Row]) -> Neighbours {
         neighbours[row.at[1] as usize].push(row.at[0]);
     }
     for list in &mut neighbours {
-        list.sort_unstable();
+        sorting::sort(list);
         list.dedup();
     }
     neighbours

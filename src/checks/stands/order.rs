@@ -3,6 +3,7 @@
 //! Joints with at most three neighbours go first, again and again: a truss that is built up triangle by triangle goes whole in this
 //! way. What remains is parted along the middle by its places, the joints on the parting line last (nested dissection, George 1973).
 
+use crate::exact::order as sorting;
 use std::collections::HashSet;
 use std::hash::{BuildHasherDefault, Hasher};
 
@@ -133,7 +134,7 @@ impl Parting<'_> {
     /// The joints with a neighbour in the other part, and those without.
     fn edge(&self, joints: Vec<u32>, other: u32) -> (Vec<u32>, Vec<u32>) {
         let mut sorted = joints;
-        sorted.sort_unstable();
+        sorting::sort(&mut sorted);
         sorted.into_iter().partition(|&joint| {
             self.graph[joint as usize].iter().any(|&neighbour| self.label[neighbour as usize] == other)
         })

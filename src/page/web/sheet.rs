@@ -2,7 +2,7 @@
 
 use super::app::NOTICE;
 use super::board::{labels, paths};
-use crate::page::state::view::{PAPER, SheetTable, SheetView};
+use crate::page::state::view::{SheetTable, SheetView};
 use std::rc::Rc;
 use yew::prelude::*;
 
@@ -19,7 +19,7 @@ pub(super) fn Sheet(props: &SheetProps) -> Html {
         <section class="sheet" aria-hidden="true">
             <p class="sheet-title">{ &view.title }</p>
             <p>{ &view.particulars }</p>
-            <svg class="sheet-drawing board" viewBox={format!("0 0 {PAPER} {}", view.height)}>
+            <svg class="sheet-drawing board" viewBox={view.view_box.clone()}>
                 { paths(&view.drawing.paths) }{ labels(&view.drawing.labels) }
             </svg>
             { for view.questions.iter().map(|(question, lines)| html! {

@@ -3,6 +3,7 @@
 //! The matrices are sums of weighted squares of short rows (normal equations). The pattern is found once for a set of
 //! rows; the numbers are filled in many times. Minimum degree (Tinney and Walker 1967) keeps long trusses near linear.
 
+use crate::exact::order;
 use std::collections::BTreeSet;
 
 /// The pattern of a Cholesky factor, and where each row's products go in it.
@@ -41,7 +42,7 @@ impl Pattern {
         let (mut starts, mut rows) = (vec![0], Vec::new());
         for (place, column) in columns.iter().enumerate() {
             let mut below: Vec<usize> = column.iter().map(|&unknown| rank[unknown]).collect();
-            below.sort_unstable();
+            order::sort(&mut below);
             rows.push(place);
             rows.extend(below);
             starts.push(rows.len());

@@ -2,6 +2,7 @@
 
 use super::board::{DrawingView, drawing_view};
 use super::book::{RowView, book_view, column_titles};
+use super::path::tenths;
 use crate::measure::{Sheet, pretty};
 use crate::page::state::{Book, Camera, State};
 use crate::truss::Selection;
@@ -15,8 +16,8 @@ pub struct SheetView {
     pub particulars: String,
     /// The drawing, for a paper of [`PAPER`] units.
     pub drawing: DrawingView,
-    /// The height of the drawing, in units.
-    pub height: f64,
+    /// The part of the plane that the drawing takes, as an attribute.
+    pub view_box: String,
     /// Findings by question: the question, the answer, and a line for each finding.
     pub questions: Vec<(String, Vec<String>)>,
     /// The tables.
@@ -61,7 +62,7 @@ pub fn sheet_view(state: &State) -> Option<SheetView> {
             checked.fingerprint
         ),
         drawing,
-        height,
+        view_box: format!("0 0 {} {}", tenths(PAPER), tenths(height)),
         questions: questions(state, checked),
         tables: Book::ALL.into_iter().filter_map(|book| table(state, book)).collect(),
     })

@@ -19,10 +19,12 @@ pub fn svg_text(state: &State) -> String {
     let (top, bottom) = (44.0, 34.0);
     let whole = height + top + bottom;
     let mut text = format!(
-        "<svg xmlns=\"http://www.w3.org/2000/svg\" viewBox=\"0 0 {PAPER} {h}\" width=\"{PAPER}\" height=\"{h}\">\n\
+        "<svg xmlns=\"http://www.w3.org/2000/svg\" viewBox=\"0 0 {w} {h}\" width=\"{w}\" height=\"{h}\">\n\
          <style>{STYLE}</style>\n<rect width=\"100%\" height=\"100%\" fill=\"#fff\"/>\n\
-         <text class=\"title\" x=\"20\" y=\"28\">{}</text>\n<g transform=\"translate(0 {top})\">\n",
+         <text class=\"title\" x=\"20\" y=\"28\">{}</text>\n<g transform=\"translate(0 {})\">\n",
         escaped(&super::head_view(state).title),
+        tenths(top),
+        w = tenths(PAPER),
         h = tenths(whole),
     );
     push_drawing(&mut text, &drawing);
