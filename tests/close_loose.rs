@@ -190,13 +190,10 @@ fn values_beyond_floats_are_no_panic() {
 #[test]
 fn angles_that_contradict_each_other_are_excluded_by_proof() {
     // With 13 at 60 degrees C is at (6.5, 11.26), which B sees at 56.3 degrees.
-    let (_, answer, _) = ask(triangle("1/16").length("A", "C", "13").angle("A", "B", "C", "60", "1/10").angle(
-        "B",
-        "A",
-        "C",
-        "52",
-        "1/10",
-    ));
+    let (_, answer, _) = ask(triangle("1/16")
+        .length("A", "C", "13")
+        .angle("A", "B", "C", "60", "1/10")
+        .angle("B", "A", "C", "52", "1/10"));
     assert_eq!((answer.state, answer.proof), (CloseState::DoesNotClose, Proof::Exclusion), "{}", answer.summary);
     assert_eq!(answer.suspects.len(), 3, "{}", answer.summary);
 }
