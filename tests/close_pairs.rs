@@ -2,8 +2,8 @@
 
 mod close_help;
 
-use chordwright::checks::{CloseAnswer, CloseState, Effort, close};
-use chordwright::exact::quadrance;
+use chordwright::checks::{CloseState, Effort, Evidence, Finding, Rule, Suspect, close};
+use chordwright::exact::{Point, Rational};
 use chordwright::truss::{FigureKind, JointId, Truss};
 use close_help::generate::{Dice, SHAPES, clean, slip};
 use close_help::q;
@@ -20,17 +20,39 @@ fn two_apart(truss: &Truss, dice: &mut Dice) -> [usize; 2] {
     }
 }
 
-/// True when the layout of a blamed figure agrees with every length but those blamed.
-fn agrees_without(truss: &Truss, answer: &CloseAnswer) -> bool {
-    let blamed: Vec<usize> = answer.pair.iter().map(|suspect| suspect.figure.index()).collect();
-    let places = &answer.pair[0].layout;
-    truss.figures.iter().enumerate().filter(|(index, _)| !blamed.contains(index)).all(|(_, figure)| {
-        let FigureKind::Length { from, to, value } = &figure.kind else { return true };
-        let half = q(1, 32);
-        let (least, most) = (&value.value - &half, &value.value + &half);
-        let found = quadrance(&places[from.index()], &places[to.index()]);
-        found >= &least * &least && found <= &most * &most
+/// True when places agree with every figure but those left out, by arithmetic of this test's own.
+fn agrees(truss: &Truss, places: &[Point], left_out: &[usize]) -> bool {
+    let half = q(1, 32);
+    let leg = |from: &JointId, to: &JointId| &places[to.index()] - &places[from.index()];
+    let near = |found: &Rational, printed: &Rational| *found >= printed - &half && *found <= printed + &half;
+    truss.figures.iter().enumerate().filter(|(index, _)| !left_out.contains(index)).all(|(_, figure)| {
+        match &figure.kind {
+            FigureKind::Run { from, to, value } => near(&leg(from, to).x, &value.value),
+            FigureKind::Rise { from, to, value } => near(&leg(from, to).y, &value.value),
+            FigureKind::Length { from, to, value } => {
+                let (least, most) = (&value.value - &half, &value.value + &half);
+                let found = leg(from, to).quadrance();
+                found >= &least * &least && found <= &most * &most
+            }
+            other => panic!("no {} is planted", other.name()),
+        }
     })
+}
+
+fn figures(blamed: &[Suspect]) -> Vec<usize> {
+    blamed.iter().map(|suspect| suspect.figure.index()).collect()
+}
+
+/// True when the finding says in words that the others close without these two.
+fn is_told(truss: &Truss, findings: &[Finding], pair: [usize; 2]) -> bool {
+    let says = |words: &str| {
+        let marks = pair.map(|index| format!("{}, the ", truss.figures[index].mark));
+        words.starts_with(&format!("without {}", marks[0]))
+            && words.contains(&format!(" and {}", marks[1]))
+            && words.contains(" the others close: ")
+    };
+    let excluded = findings.iter().filter(|finding| finding.rule == Rule::Excluded);
+    excluded.flat_map(|finding| &finding.evidence).any(|line| matches!(line, Evidence::Words(words) if says(words)))
 }
 
 #[derive(Debug, Default)]
@@ -40,6 +62,8 @@ struct Tally {
     excluded: usize,
     pair: usize,
     other_pair: usize,
+    /// The planted pair is among those told in words.
+    told: usize,
 }
 
 #[test]
@@ -65,25 +89,36 @@ fn two_planted_slips_are_excluded_and_the_pair_is_found() {
     let two = tally.planted - tally.alone;
     assert!(tally.excluded * 100 >= two * 95, "at least 95 in 100 are excluded by proof: {tally:?}");
     assert!(tally.pair * 100 >= two * 90, "the pair is found in at least 90 of 100: {tally:?}");
+    assert!(tally.told * 100 >= two * 95, "and told in at least 95 of 100, if not first: {tally:?}");
 }
 
 fn judge(truss: &Truss, pair: [usize; 2], tally: &mut Tally) {
-    let (answer, _) = close(truss, &Effort::default());
+    let (answer, findings) = close(truss, &Effort::default());
     tally.planted += 1;
+    if let Some(layout) = &answer.layout {
+        assert_eq!(answer.state, CloseState::Closes);
+        assert!(agrees(truss, layout, &[]), "closes is proved by a layout");
+    }
+    for suspect in &answer.suspects {
+        assert!(agrees(truss, &suspect.layout, &figures(std::slice::from_ref(suspect))), "a suspect is proved by one");
+    }
     if answer.state == CloseState::Closes || !answer.suspects.is_empty() {
         // One of the two has no other figure against it.
         tally.alone += 1;
         return;
     }
     tally.excluded += usize::from(answer.state == CloseState::DoesNotClose);
-    let mut told: Vec<usize> = answer.pair.iter().map(|suspect| suspect.figure.index()).collect();
+    let mut told = figures(&answer.pair);
     told.sort_unstable();
-    match told.as_slice() {
-        [] => {}
-        told => {
-            assert!(agrees_without(truss, &answer), "the pair is proved by a layout");
-            tally.pair += usize::from(told == pair);
-            tally.other_pair += usize::from(told != pair);
-        }
+    if told.is_empty() {
+        return;
     }
+    assert_eq!(told.len(), 2);
+    for suspect in &answer.pair {
+        assert!(agrees(truss, &suspect.layout, &told), "a pair is proved by a layout");
+    }
+    let is_planted = told == pair;
+    tally.pair += usize::from(is_planted);
+    tally.other_pair += usize::from(!is_planted);
+    tally.told += usize::from(is_told(truss, &findings, pair));
 }

@@ -70,17 +70,18 @@ impl<'t> Problem<'t> {
         }
     }
 
-    /// True when a figure has a row that can be leant on; exact ties are substituted, and what they leave no unknown in has
-    /// none either.
+    /// True when a figure has a row that can be leant on; exact ties are substituted, and what they leave nothing to change
+    /// in has none either.
     pub(crate) fn has_row(&self, id: FigureId) -> bool {
-        self.base.network.rows.iter().any(|row| row.figure == id.index())
+        self.base.network.rows.iter().any(|row| row.figure == id.index() && !row.is_constant())
     }
 
     /// The figures about a loose joint of which nothing can be leant on, so that only leaving them out tells.
     pub(crate) fn figures_without_rows(&self) -> Vec<FigureId> {
         let is_loose = |id: &FigureId| !super::meaning::is_all_set(self.truss, &self.truss.figure(*id).kind);
         let mut has_row = vec![false; self.conditions.len()];
-        self.base.network.rows.iter().for_each(|row| has_row[row.figure] = true);
+        let changing = self.base.network.rows.iter().filter(|row| !row.is_constant());
+        changing.for_each(|row| has_row[row.figure] = true);
         (0..self.conditions.len()).filter(|&index| !has_row[index]).map(FigureId::new).filter(is_loose).collect()
     }
 

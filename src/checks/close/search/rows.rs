@@ -118,6 +118,12 @@ impl Row {
         Row { figure, condition: index, form, lo, hi, exact: condition.is_exact(), unknowns, places, joints }
     }
 
+    /// True when no place changes what it measures: both its ends are tied to one unknown. Such a row is never leant on
+    /// while it holds.
+    pub(crate) fn is_constant(&self) -> bool {
+        matches!(self.form, Form::Along(axis) if self.places[axis] == self.places[2 + axis])
+    }
+
     /// The row at these places (floats, by joint).
     pub(crate) fn linearise(&self, places: &[[f64; 2]]) -> Linear {
         let mut slopes = [0.0; 8];

@@ -68,6 +68,53 @@ fn planted(dice: &mut Dice) -> (Truss, Vec<Point>) {
     (truss, truth)
 }
 
+/// A truss of 4 to 8 panels, all joints but the first loose: strings along the bottom with their overall, rises, and the
+/// length of every chord, post and diagonal, printed from true places. Every other one has no direction: lengths alone.
+fn panelled(dice: &mut Dice) -> (Truss, Vec<Point>) {
+    let panels = 4 + dice.below(5);
+    let is_turning = dice.below(2) == 0;
+    let mut jitter = |by: i64| ratio(dice.between(-16 * by, 16 * by), 16);
+    let column = |i: usize| whole(64 * i as i64);
+    let bottom: Vec<Point> = (0..=panels).map(|i| Point { x: column(i) + jitter(9), y: jitter(5) }).collect();
+    let top = (0..=panels).map(|i| Point { x: column(i) + jitter(6), y: whole(90) + jitter(12) });
+    let truth: Vec<Point> = bottom.into_iter().chain(top).collect();
+    let mut truss = Truss::default();
+    for (index, point) in truth.iter().enumerate() {
+        let loose = index > 0;
+        let [x, y] =
+            [&point.x, &point.y].map(|v| Written::plain(if loose { (v + jitter(3)).round() } else { v.clone() }));
+        truss.joints.push(Joint { mark: format!("J{index}"), x, y, loose });
+    }
+    let up = |i: usize| panels + 1 + i;
+    let run = |from: usize, to: usize| FigureKind::Run {
+        from: id(from),
+        to: id(to),
+        value: to_step(&(&truth[to].x - &truth[from].x), &ratio(1, 16)),
+    };
+    let rise = |to: usize| FigureKind::Rise {
+        from: id(0),
+        to: id(to),
+        value: to_step(&(&truth[to].y - &truth[0].y), &ratio(1, 16)),
+    };
+    let mut figures: Vec<FigureKind> = Vec::new();
+    if !is_turning {
+        figures.extend((0..panels).map(|i| run(i, i + 1)));
+        figures.push(run(0, panels));
+        figures.extend((1..truth.len()).map(rise));
+    }
+    for i in 0..=panels {
+        figures.push(length(&truth, i, up(i)));
+        if i < panels {
+            let both = if is_turning { vec![(i, up(i + 1)), (up(i), i + 1)] } else { vec![(i, up(i + 1))] };
+            let sides = [(i, i + 1), (up(i), up(i + 1))].into_iter().chain(both);
+            figures.extend(sides.map(|(from, to)| length(&truth, from, to)));
+        }
+    }
+    figures.into_iter().for_each(|kind| add(&mut truss, &truth, kind, None));
+    assert_eq!(truss.problems(), Vec::new(), "a planted truss is fit to be checked");
+    (truss, truth)
+}
+
 /// Adds a figure that the truth agrees with.
 fn add(truss: &mut Truss, truth: &[Point], kind: FigureKind, step: Option<Rational>) {
     let figure = Figure { mark: format!("f{}", truss.figures.len()), kind, step: step.map(Written::plain) };
@@ -153,11 +200,11 @@ fn slipped(truss: &Truss, dice: &mut Dice) -> Option<Truss> {
 }
 
 /// Trusses that close, each with the certificate of a slip in it: what a judge of the truss without it must refuse.
-fn cases(seeds: u64) -> Vec<(u64, Truss, Vec<Point>, Certificate)> {
+fn cases(seeds: u64, plant: fn(&mut Dice) -> (Truss, Vec<Point>)) -> Vec<(u64, Truss, Vec<Point>, Certificate)> {
     let mut found = Vec::new();
     for seed in 0..seeds {
         let mut dice = Dice::new(seed + 1);
-        let (truss, truth) = planted(&mut dice);
+        let (truss, truth) = plant(&mut dice);
         let Some(slipped) = slipped(&truss, &mut dice) else { continue };
         let problem = Problem::new(&slipped, &Effort::default());
         if let Some(certificate) = proof(&problem) {
@@ -171,7 +218,7 @@ fn cases(seeds: u64) -> Vec<(u64, Truss, Vec<Point>, Certificate)> {
 #[test]
 fn a_proof_of_a_slip_is_none_when_it_is_mended() {
     let mut kinds = [0usize; 5];
-    for (seed, truss, truth, certificate) in cases(160) {
+    for (seed, truss, truth, certificate) in cases(160, planted) {
         let problem = Problem::new(&truss, &Effort::default());
         assert!(is_layout(&truss, &problem.sides, &truth, &[]), "seed {seed}: the truth is a layout");
         assert!(!accepts(&problem.case(&[]), &certificate), "seed {seed}: {certificate:?}");
@@ -190,7 +237,7 @@ fn a_proof_of_a_slip_is_none_when_it_is_mended() {
 #[test]
 fn no_random_change_is_accepted_where_there_is_a_layout() {
     let (mut changed, mut stresses) = (0, 0);
-    for (seed, truss, truth, certificate) in cases(60) {
+    for (seed, truss, truth, certificate) in cases(60, planted) {
         let problem = Problem::new(&truss, &Effort::default());
         assert!(is_layout(&truss, &problem.sides, &truth, &[]), "seed {seed}: the truth is a layout");
         let case = problem.case(&[]);
@@ -207,6 +254,63 @@ fn no_random_change_is_accepted_where_there_is_a_layout() {
     }
     println!("{changed} {stresses}");
     assert!(changed >= 600 && stresses >= 300, "{changed} of which {stresses} stresses");
+}
+
+#[test]
+fn neither_a_mended_nor_a_changed_proof_is_accepted_of_middling_trusses() {
+    let (mut stresses, mut splits, mut turned, mut changed) = (0, 0, 0, 0);
+    let cases = cases(48, panelled);
+    for (seed, truss, truth, certificate) in &cases {
+        let problem = Problem::new(truss, &Effort::default());
+        assert!(is_layout(truss, &problem.sides, truth, &[]), "seed {seed}: the truth is a layout");
+        let case = problem.case(&[]);
+        assert!(!accepts(&case, certificate), "seed {seed}: {certificate:?}");
+        if let Certificate::Stress(stress) = certificate {
+            stresses += 1;
+            splits += usize::from(matches!(stress.branch, Branch::Split { .. }));
+            turned += usize::from(stress.turned.is_some());
+        }
+        let mut dice = Dice::new(seed + 9001);
+        for _ in 0..12 {
+            let mut tampered = certificate.clone();
+            for _ in 0..=dice.below(4) {
+                change(&mut tampered, &case, &mut dice);
+            }
+            assert!(!accepts(&case, &tampered), "seed {seed}: {tampered:?}");
+            changed += 1;
+        }
+    }
+    println!("{} proofs, {stresses} stresses: {splits} split, {turned} turned; {changed} changed", cases.len());
+    assert!(
+        cases.len() >= 36 && stresses >= 24 && splits >= 4 && turned >= 8,
+        "{} {stresses} {splits} {turned}",
+        cases.len()
+    );
+}
+
+#[test]
+fn a_proof_of_a_middling_truss_needs_the_slip_in_it() {
+    let mut needed = 0;
+    for seed in 0..48 {
+        let mut dice = Dice::new(seed + 1);
+        let (truss, truth) = panelled(&mut dice);
+        let Some(slipped) = slipped(&truss, &mut dice) else { continue };
+        let wrong =
+            FigureId::new((0..truss.figures.len()).find(|&at| truss.figures[at] != slipped.figures[at]).expect("one"));
+        let problem = Problem::new(&slipped, &Effort::default());
+        let Some(certificate) = proof(&problem) else { continue };
+        assert!(accepts(&problem.case(&[]), &certificate), "seed {seed}");
+        // Without the wrong figure the truth is a layout, so that no proof may be one; without a figure that is used the
+        // proof is none, whatever could be proved.
+        assert!(is_layout(&slipped, &problem.sides, &truth, &[wrong]), "seed {seed}");
+        let used = crate::checks::close::explain::figures(&certificate);
+        assert!(used.contains(&wrong), "seed {seed}: {certificate:?}");
+        for figure in used {
+            assert!(!accepts(&problem.case(&[figure]), &certificate), "seed {seed}: without {figure:?}");
+        }
+        needed += 1;
+    }
+    assert!(needed >= 36, "{needed}");
 }
 
 #[test]
