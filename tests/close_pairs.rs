@@ -122,3 +122,26 @@ fn judge(truss: &Truss, pair: [usize; 2], tally: &mut Tally) {
     tally.other_pair += usize::from(!is_planted);
     tally.told += usize::from(is_told(truss, &findings, pair));
 }
+
+#[test]
+fn a_pair_with_a_false_level_in_it_is_found() {
+    let mut found = 0;
+    for seed in 0..12 {
+        let planted = clean(close_help::generate::Shape::Gable, 6, seed);
+        let mut dice = Dice::new(seed + 900);
+        // Two top joints of different heights are called level, and a member is figured an inch and more too long.
+        let [low, high] = ["U1", "U3"].map(|mark| planted.truss.joint_marked(mark).expect("a top joint"));
+        let is_length = |index: &usize| matches!(planted.truss.figures[*index].kind, FigureKind::Length { .. });
+        let lengths: Vec<usize> = (0..planted.truss.figures.len()).filter(is_length).collect();
+        let figure = lengths[dice.below(lengths.len())];
+        let mut truss = slip(&planted.truss, figure, &q(dice.between(20, 60), 16));
+        let level = truss.figures.len();
+        let kind = FigureKind::Level { joints: vec![low, high] };
+        truss.figures.push(chordwright::truss::Figure { mark: "fl".into(), kind, step: None });
+        let (answer, _) = close(&truss, &Effort::default());
+        let told: Vec<usize> = answer.pair.iter().map(|suspect| suspect.figure.index()).collect();
+        assert_ne!(answer.state, CloseState::Closes);
+        found += usize::from(told.contains(&level) && told.contains(&figure));
+    }
+    assert!(found >= 9, "{found} of 12");
+}

@@ -157,13 +157,16 @@ fn pairs(
     blame: &mut Blame,
 ) {
     let mut tried = Vec::new();
-    for first in all.iter().filter(|id| problem.has_row(**id)).take(PAIR_WIDTH) {
+    let (contradicted, mut tied) = (set_failures(problem), problem.figures_without_rows());
+    tied.truncate(PAIR_WIDTH / 2);
+    for first in all.iter().take(PAIR_WIDTH) {
         if failed.iter().all(|(id, _)| id != first) {
             failed.push((*first, trial_without(problem, &[*first], start)));
         }
         let Some((_, without)) = failed.iter().find(|(id, _)| id == first) else { continue };
         let leaning = leaning_figures(problem, &[*first], without);
-        for second in set_failures(problem).into_iter().chain(leaning).take(PAIR_WIDTH) {
+        let leaning = leaning.into_iter().take(PAIR_WIDTH);
+        for second in contradicted.iter().copied().chain(leaning).chain(tied.iter().copied()) {
             if second == *first {
                 continue;
             }
