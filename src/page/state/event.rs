@@ -3,6 +3,7 @@
 use super::camera::Pixel;
 use super::cells::Cell;
 use super::model::{Book, Thing};
+use super::paper::SheetSetup;
 use crate::checks::{Limits, Progress, Question, Report, Stage};
 use crate::truss::{Role, Truss};
 use std::rc::Rc;
@@ -110,6 +111,10 @@ pub enum Event {
     LinkClosed,
     /// A print was asked for.
     PrintAsked,
+    /// The choice of paper and scale was opened or put away.
+    PrintPanelToggled,
+    /// Paper and scale were chosen.
+    SheetChosen(SheetSetup),
     /// The browser begins to print, or has done so.
     Printing(bool),
     /// Another theme was asked for.

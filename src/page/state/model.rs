@@ -4,6 +4,7 @@ use super::camera::{Camera, Pixel, Place, place_of};
 use super::cells::Cell;
 use super::checked::Checked;
 use super::history::History;
+use super::paper::SheetSetup;
 use crate::checks::{Limits, Places, Progress, Question};
 use crate::exact::Point;
 use crate::truss::{FigureId, JointId, MemberId, Selection, SupportId, Truss};
@@ -61,6 +62,10 @@ pub struct State {
     pub theme: Theme,
     /// Whether motion on the screen is to be kept still.
     pub still: bool,
+    /// How the sheet is to be printed.
+    pub setup: SheetSetup,
+    /// Whether paper and scale are being chosen.
+    pub print_panel: bool,
     /// True while the sheet is laid out for a print.
     pub printing: bool,
     /// The last thing worth saying.

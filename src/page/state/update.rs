@@ -103,8 +103,11 @@ fn apply(state: &mut State, event: Event, effects: &mut Vec<Effect>) {
         Event::LinkAsked => files::make_link(state, effects),
         Event::LinkCopied(done) => link_copied(state, done),
         Event::LinkClosed => state.link = None,
+        Event::PrintPanelToggled => state.print_panel = !state.print_panel,
+        Event::SheetChosen(setup) => state.setup = setup,
         Event::PrintAsked => {
             state.printing = true;
+            state.print_panel = false;
             effects.push(Effect::Print);
         }
         Event::Printing(now) => state.printing = now,
@@ -389,6 +392,7 @@ fn escape(state: &mut State) {
     match () {
         () if state.drag != Drag::None => state.drag = Drag::None,
         () if state.help => state.help = false,
+        () if state.print_panel => state.print_panel = false,
         () if state.link.is_some() => state.link = None,
         () if state.message.is_some() => state.message = None,
         () if state.open_finding.is_some() || state.open_suspect.is_some() => {

@@ -2,8 +2,8 @@
 
 use super::field::Field;
 use super::shell::read_file;
-use crate::page::state::view::HeadView;
-use crate::page::state::{Cell, Column, Event as PageEvent, Row, Theme};
+use crate::page::state::view::{HeadView, PrintView};
+use crate::page::state::{Cell, Column, Event as PageEvent, Paper, Row, SheetSetup, Theme};
 use crate::truss::Truss;
 use std::rc::Rc;
 use web_sys::{HtmlInputElement, HtmlSelectElement};
@@ -65,7 +65,7 @@ pub(super) fn Head(props: &HeadProps) -> Html {
                 <OpenFile on={on.clone()} />
                 <button class="act" onclick={act(PageEvent::SaveAsked)}>{ "Save" }</button>
                 <button class="act" id="make-link" onclick={act(PageEvent::LinkAsked)}>{ "Link" }</button>
-                <button class="act" onclick={act(PageEvent::PrintAsked)}>{ "Print" }</button>
+                <button class="act" id="print" aria-expanded={view.print.is_some().to_string()} onclick={act(PageEvent::PrintPanelToggled)}>{ "Print" }</button>
                 <button class="act undo" id="undo" disabled={view.undo.is_none()} title={undo.clone()} onclick={act(PageEvent::UndoAsked)}>
                     { if view.undo.is_some() { undo } else { "Undo".into() } }
                 </button>
@@ -76,7 +76,39 @@ pub(super) fn Head(props: &HeadProps) -> Html {
                 <button class="act" title="keys" aria-label="list of keys" onclick={act(PageEvent::HelpToggled)}>{ "Keys" }</button>
             </nav>
             if let Some(link) = link { { link_panel(link, on) } }
+            if let Some(print) = &view.print { { print_panel(print, on) } }
         </header>
+    }
+}
+
+/// Paper and scale, and the print.
+fn print_panel(view: &PrintView, on: &Callback<PageEvent>) -> Html {
+    let setup = view.setup;
+    let value = |event: yew::Event| {
+        event.target_dyn_into::<HtmlSelectElement>().map(|select| select.value()).unwrap_or_default()
+    };
+    let paper = on.reform(move |event| {
+        let name = value(event);
+        PageEvent::SheetChosen(SheetSetup { paper: Paper::ALL.into_iter().find(|p| p.name() == name), ..setup })
+    });
+    let scale =
+        on.reform(move |event| PageEvent::SheetChosen(SheetSetup { times: value(event).parse().ok(), ..setup }));
+    html! {
+        <div class="link-panel print-panel">
+            <label>{ "Paper " }
+                <select id="paper" onchange={paper}>
+                    { for Paper::ALL.iter().map(|p| html! { <option value={p.name()} selected={*p == view.paper}>{ p.name() }</option> }) }
+                </select>
+            </label>
+            <label>{ "Scale " }
+                <select id="scale" onchange={scale}>
+                    <option value="" selected={setup.times.is_none()}>{ format!("the largest that fits: {}", view.fits) }</option>
+                    { for view.scales.iter().map(|s| html! { <option value={s.times.to_string()} selected={setup.times == Some(s.times)}>{ s.name }</option> }) }
+                </select>
+            </label>
+            <button class="main" id="print-now" onclick={on.reform(|_: MouseEvent| PageEvent::PrintAsked)}>{ "Print the sheet" }</button>
+            <button class="plain" onclick={on.reform(|_: MouseEvent| PageEvent::PrintPanelToggled)}>{ "Close" }</button>
+        </div>
     }
 }
 

@@ -16,12 +16,15 @@ pub(super) struct SheetProps {
 pub(super) fn Sheet(props: &SheetProps) -> Html {
     let Some(view) = &*props.view else { return Html::default() };
     html! {
-        <section class="sheet" aria-hidden="true">
+        <section class={view.class} aria-hidden="true">
+            <div class="sheet-body">
             <p class="sheet-title">{ &view.title }</p>
-            <p>{ &view.particulars }</p>
-            <svg class="sheet-drawing board" viewBox={view.view_box.clone()}>
+            <svg class="sheet-drawing board" viewBox={view.view_box.clone()} width={view.width.clone()}>
                 { paths(&view.drawing.paths) }{ labels(&view.drawing.labels) }
             </svg>
+            <dl class="title-block">
+                { for view.block.iter().map(|(name, value)| html! { <div><dt>{ *name }</dt><dd>{ value }</dd></div> }) }
+            </dl>
             { for view.questions.iter().map(|(question, lines)| html! {
                 <div class="sheet-question">
                     <p>{ question }</p>
@@ -29,7 +32,8 @@ pub(super) fn Sheet(props: &SheetProps) -> Html {
                 </div>
             }) }
             { for view.tables.iter().map(table) }
-            <p class="sheet-notice"><strong>{ NOTICE[0] }</strong>{ NOTICE[1] }</p>
+            </div>
+            <p class="sheet-notice"><span><strong>{ NOTICE[0] }</strong>{ NOTICE[1] }</span></p>
         </section>
     }
 }
@@ -38,8 +42,10 @@ fn table(view: &SheetTable) -> Html {
     let row = |cells: &Vec<String>| html! { <tr>{ for cells.iter().map(|text| html! { <td>{ text }</td> }) }</tr> };
     html! {
         <table>
-            <caption>{ &view.title }</caption>
-            <thead><tr>{ for view.columns.iter().map(|title| html! { <th>{ title }</th> }) }</tr></thead>
+            <thead>
+                <tr><th class="table-title" colspan={view.columns.len().to_string()}>{ &view.title }</th></tr>
+                <tr>{ for view.columns.iter().map(|title| html! { <th>{ title }</th> }) }</tr>
+            </thead>
             <tbody>{ for view.rows.iter().map(row) }</tbody>
         </table>
     }

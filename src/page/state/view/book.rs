@@ -83,7 +83,7 @@ pub fn column_titles(book: Book) -> &'static [&'static str] {
         Book::Members => &["member", "from", "to", "role", "length", "bevel", "degrees", "quadrance"],
         Book::Figures => &["figure", "kind", "between", "printed", "to a step of", "the places give", "misfit"],
         Book::Supports => &["joint", "kind", "holds right", "holds up"],
-        Book::Schedule => &["off", "role", "length", "bevel", "degrees", "quadrance", "members"],
+        Book::Schedule => &["off", "opposite hand", "role", "length", "bevel", "degrees", "quadrance", "members"],
         Book::Strings => &["along", "string as printed, adding up exactly", "roundings", "joints"],
     }
 }
@@ -158,7 +158,8 @@ impl Maker<'_> {
                 can_remove: false,
                 class: "row",
                 cells: vec![
-                    shown(off_words(group), CellKind::Words),
+                    shown(group.members.len().to_string(), CellKind::Words),
+                    shown(hand_words(group), CellKind::Words),
                     shown(group.role.name().into(), CellKind::Words),
                     shown(group.length.clone(), CellKind::Number),
                     shown(group.bevel.clone(), CellKind::Number),
@@ -173,6 +174,7 @@ impl Maker<'_> {
                 class: "row total",
                 cells: vec![
                     shown(total.count.to_string(), CellKind::Words),
+                    shown(String::new(), CellKind::Words),
                     shown(format!("{} in all", total.role.name()), CellKind::Words),
                     shown(total.length.clone(), CellKind::Number),
                 ],
@@ -332,13 +334,11 @@ impl Maker<'_> {
     }
 }
 
-/// `4 off`, with both hands where there are.
-fn off_words(group: &Equal) -> String {
+/// `3 and 3`, where a group has both hands.
+fn hand_words(group: &Equal) -> String {
     match group.hands {
-        [right, left] if right > 0 && left > 0 => {
-            format!("{} off: {right} and {left} opposite hand", group.members.len())
-        }
-        _ => format!("{} off", group.members.len()),
+        [right, left] if right > 0 && left > 0 => format!("{right} and {left}"),
+        _ => String::new(),
     }
 }
 

@@ -19,11 +19,12 @@ pub use evidence::{EvidenceLine, EvidenceView, FindingView, LimitView, MendView,
 pub use labels::{Anchor, LabelView};
 pub use overlay::{OverlayView, overlay_view};
 pub use path::PathView;
-pub use sheet::{PAPER, SheetTable, SheetView, sheet_view};
+pub use sheet::{SheetTable, SheetView, sheet_view};
 pub use svg::svg_text;
 
 use super::cells::{Cell, Column, Row};
 use super::model::{Source, State};
+use super::paper::{Paper, Scale, SheetSetup, on_paper, scales};
 use crate::measure::pretty;
 use crate::truss::Selection;
 
@@ -44,6 +45,27 @@ pub struct HeadView {
     pub redo: Option<String>,
     /// The fingerprint, when the answers are there.
     pub fingerprint: String,
+    /// The choice of paper and scale, while it is open.
+    pub print: Option<PrintView>,
+}
+
+/// The choice of paper and scale.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct PrintView {
+    /// What is chosen.
+    pub setup: SheetSetup,
+    /// The paper that this comes to.
+    pub paper: Paper,
+    /// The standard scales.
+    pub scales: &'static [Scale],
+    /// The largest scale that fits the paper.
+    pub fits: String,
+}
+
+fn print_view(state: &State) -> PrintView {
+    let (unit, setup) = (state.truss.unit, state.setup);
+    let free = on_paper(&state.places, unit, SheetSetup { times: None, ..setup });
+    PrintView { setup, paper: free.paper, scales: scales(unit), fits: free.scale }
 }
 
 /// The head of the page, from the state.
@@ -65,6 +87,7 @@ pub fn head_view(state: &State) -> HeadView {
         undo: state.history.undo_label().map(pretty),
         redo: state.history.redo_label().map(pretty),
         fingerprint: state.fresh().map(|checked| checked.fingerprint.clone()).unwrap_or_default(),
+        print: state.print_panel.then(|| print_view(state)),
     }
 }
 

@@ -4,7 +4,8 @@ use super::board::{DrawingView, drawing_view};
 use super::book::{RowView, book_view, column_titles};
 use super::path::tenths;
 use crate::measure::{Sheet, pretty};
-use crate::page::state::{Book, Camera, State};
+use crate::page::state::paper::{OnPaper, UNIT, on_paper};
+use crate::page::state::{Book, State};
 use crate::truss::Selection;
 
 /// The printed sheet.
@@ -12,10 +13,14 @@ use crate::truss::Selection;
 pub struct SheetView {
     /// The title.
     pub title: String,
-    /// Unit, step and fingerprint, in words.
-    pub particulars: String,
-    /// The drawing, for a paper of [`PAPER`] units.
+    /// The style of its paper.
+    pub class: &'static str,
+    /// What the title block says: names and values; an empty value is filled in by hand.
+    pub block: Vec<(&'static str, String)>,
+    /// The drawing.
     pub drawing: DrawingView,
+    /// How wide the drawing is, as an attribute.
+    pub width: String,
     /// The part of the plane that the drawing takes, as an attribute.
     pub view_box: String,
     /// Findings by question: the question, the answer, and a line for each finding.
@@ -35,10 +40,6 @@ pub struct SheetTable {
     pub rows: Vec<Vec<String>>,
 }
 
-/// The width of the drawing on paper, in units: type of 12 units is about 3 mm high on a page of 186 mm.
-pub const PAPER: f64 = 740.0;
-/// The least and greatest height of the drawing, in units.
-const HEIGHTS: (f64, f64) = (300.0, 760.0);
 /// The most lines in tables that are laid out for paper.
 const MOST: usize = 4000;
 /// The most findings printed for one question.
@@ -51,38 +52,41 @@ pub fn sheet_view(state: &State) -> Option<SheetView> {
     if truss.members.len() + truss.figures.len() + truss.joints.len() > MOST {
         return None;
     }
-    let (drawing, height) = paper_drawing(state);
+    let (drawing, on_paper) = paper_drawing(state);
     let step = Sheet::of(truss.unit, &truss.step.value).exact_words(&truss.step.value);
     Some(SheetView {
         title: super::head_view(state).title,
-        particulars: format!(
-            "unit {}, printed to {}, fingerprint {}",
-            truss.unit.symbol(),
-            pretty(&step),
-            checked.fingerprint
-        ),
+        class: on_paper.paper.class(),
+        block: vec![
+            ("truss", super::head_view(state).title),
+            ("scale", on_paper.scale.clone()),
+            ("unit", truss.unit.symbol().into()),
+            ("printed to", pretty(&step)),
+            ("fingerprint", checked.fingerprint.clone()),
+            ("drawn", String::new()),
+            ("checked", String::new()),
+            ("date", String::new()),
+            ("sheet", String::new()),
+        ],
         drawing,
-        view_box: format!("0 0 {} {}", tenths(PAPER), tenths(height)),
+        width: format!("{}mm", tenths(on_paper.size.0 * UNIT)),
+        view_box: format!("0 0 {} {}", tenths(on_paper.size.0), tenths(on_paper.size.1)),
         questions: questions(state, checked),
         tables: Book::ALL.into_iter().filter_map(|book| table(state, book)).collect(),
     })
 }
 
-/// The drawing alone, with nothing selected or opened, fitted to the paper.
-pub(super) fn paper_drawing(state: &State) -> (DrawingView, f64) {
-    let wide = Camera::fitted(&state.places, (PAPER, 10_000.0));
-    let heights = state.places.iter().map(|&place| wide.at(place).y);
-    let span = heights.clone().fold(f64::MIN, f64::max) - heights.fold(f64::MAX, f64::min);
-    let height = (span + 180.0).clamp(HEIGHTS.0, HEIGHTS.1);
-    let board_size = (PAPER, height);
+/// The drawing alone, with nothing selected or opened, at a standard scale on the paper.
+pub(super) fn paper_drawing(state: &State) -> (DrawingView, OnPaper) {
+    let on_paper = on_paper(&state.places, state.truss.unit, state.setup);
     let paper = State {
-        camera: Camera::fitted(&state.places, board_size),
-        board_size,
+        camera: on_paper.camera,
+        board_size: on_paper.size,
         selection: Selection::default(),
         open_finding: None,
         ..state.clone()
     };
-    (drawing_view(&paper), height)
+    (drawing_view(&paper), on_paper)
 }
 
 fn questions(state: &State, checked: &crate::page::state::Checked) -> Vec<(String, Vec<String>)> {

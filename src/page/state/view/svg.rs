@@ -2,9 +2,10 @@
 
 use super::board::{DrawingView, Turned};
 use super::path::tenths;
-use super::sheet::{PAPER, paper_drawing};
+use super::sheet::paper_drawing;
 use crate::exchange::NOTICE;
 use crate::page::state::State;
+use crate::page::state::paper::UNIT;
 
 /// How the parts of the drawing look: as on paper.
 const STYLE: &str = "path{fill:none;stroke:#111;stroke-width:1.4;stroke-linecap:round;stroke-linejoin:round}\
@@ -15,20 +16,27 @@ text.struck{text-decoration:line-through}text.mend{font-weight:700}text.title{fo
 
 /// The drawing as SVG text.
 pub fn svg_text(state: &State) -> String {
-    let (drawing, height) = paper_drawing(state);
+    let (drawing, on_paper) = paper_drawing(state);
+    let (width, height) = on_paper.size;
     let (top, bottom) = (44.0, 34.0);
     let whole = height + top + bottom;
     let mut text = format!(
-        "<svg xmlns=\"http://www.w3.org/2000/svg\" viewBox=\"0 0 {w} {h}\" width=\"{w}\" height=\"{h}\">\n\
+        "<svg xmlns=\"http://www.w3.org/2000/svg\" viewBox=\"0 0 {w} {h}\" width=\"{mm}mm\">\n\
          <style>{STYLE}</style>\n<rect width=\"100%\" height=\"100%\" fill=\"#fff\"/>\n\
          <text class=\"title\" x=\"20\" y=\"28\">{}</text>\n<g transform=\"translate(0 {})\">\n",
         escaped(&super::head_view(state).title),
         tenths(top),
-        w = tenths(PAPER),
+        w = tenths(width),
+        mm = tenths(width * UNIT),
         h = tenths(whole),
     );
     push_drawing(&mut text, &drawing);
-    text.push_str(&format!("</g>\n<text x=\"20\" y=\"{}\">{}</text>\n</svg>\n", tenths(whole - 14.0), escaped(NOTICE)));
+    text.push_str(&format!(
+        "</g>\n<text x=\"20\" y=\"{}\">Scale {}. {}</text>\n</svg>\n",
+        tenths(whole - 14.0),
+        escaped(&on_paper.scale),
+        escaped(NOTICE)
+    ));
     text
 }
 
