@@ -5,11 +5,13 @@
 //! removed. [`Truss::problems`] lists everything that makes a truss unfit to be checked; readers refuse such a truss, and
 //! edits never make one.
 
+mod configure;
 mod edit;
 mod ids;
 mod model;
 mod validate;
 
+pub use configure::{Configuration, Measures, configured};
 pub use edit::{Edit, EditError, FigureValue, Selection};
 pub use ids::{FigureId, JointId, MemberId, SupportId};
 pub use model::{Figure, FigureKind, Joint, Member, Role, Support, SupportKind, Truss};
