@@ -2,12 +2,12 @@
 
 use chordwright::checks::{Progress, Question, Rule, Stage, report};
 use chordwright::exact::{Point, ratio, whole};
-use chordwright::page::state::view::{drawing_view, evidence_view, work_view};
+use chordwright::page::state::view::{drawing_view, evidence_view, head_view, plan_view, sheet_view, work_view};
 use chordwright::page::state::{
-    Book, Button, Cell, Column, Effect, Event, KeyPress, Modifiers, Pen, Pixel, PointerAct, Row, State, Thing, Tone,
-    update,
+    Book, Button, Cell, Column, Effect, Event, KeyPress, Modifiers, Paper, Pen, Pixel, PlanField, PointerAct, Row,
+    SheetSetup, State, Thing, Tone, update,
 };
-use chordwright::truss::{FigureKind, JointId, MemberId, Role, SupportKind};
+use chordwright::truss::{Configuration, FigureKind, JointId, MemberId, Role, SupportKind};
 use std::rc::Rc;
 
 /// A page that answers its own checks at once.
@@ -404,4 +404,43 @@ fn a_limit_is_changed_where_its_effect_is_seen_and_a_wrong_one_is_refused_there(
     page.send(Event::CellEntered(cell, "7/4".into()));
     assert!(limit(&page).cell.error.contains("expected 0 to 1"), "{}", limit(&page).cell.error);
     assert_eq!(limit(&page).cell.text, "7/4", "what was typed is kept");
+}
+
+#[test]
+fn a_truss_is_laid_out_from_its_measures_and_undone() {
+    let mut page = Page::new();
+    page.send(Event::PlanOpened);
+    let plan = |page: &Page| plan_view(&page.state).expect("a plan");
+    assert!(plan(&page).error.is_empty() && !plan(&page).preview.paths.is_empty(), "it begins with a truss");
+    page.send(Event::PlanConfigured(Configuration::NorthLight));
+    page.send(Event::PlanTyped(PlanField::Other, "7'".into()));
+    assert!(plan(&page).error.contains("whole number of panels"), "{}", plan(&page).error);
+    page.send(Event::PlanTaken);
+    assert!(page.state.plan.is_some() && page.state.truss.joints.is_empty(), "a wrong plan stays open");
+    page.send(Event::PlanTyped(PlanField::Other, "10'".into())).send(Event::PlanTaken);
+    assert!(page.state.plan.is_none());
+    let answers = &page.state.fresh().expect("answers").report.answers;
+    assert_eq!((answers.close.state.name(), answers.stands.state.name()), ("closes", "rigid"));
+    assert!(page.state.truss.figures.len() > 30);
+    let first = page.state.truss.clone();
+    page.send(Event::PlanOpened).send(Event::PlanFigured).send(Event::PlanTaken);
+    assert!(page.state.truss.figures.is_empty());
+    page.send(Event::UndoAsked);
+    assert_eq!(page.state.truss, first, "the work before it comes back");
+    page.send(Event::PlanOpened).key("Escape");
+    assert!(page.state.plan.is_none());
+}
+
+#[test]
+fn paper_and_scale_are_chosen_before_the_print() {
+    let mut page = Page::new();
+    page.send(Event::DemoChosen(0)).send(Event::PrintPanelToggled);
+    let print = head_view(&page.state).print.expect("the choice is open");
+    assert_eq!((print.paper, print.fits.as_str()), (Paper::Letter, "3/16″ = 1′-0″"));
+    page.send(Event::SheetChosen(SheetSetup { paper: Some(Paper::Tabloid), times: None })).send(Event::PrintAsked);
+    assert_eq!(page.effects.last(), Some(&Effect::Print));
+    let sheet = sheet_view(&page.state).expect("a sheet");
+    assert_eq!(sheet.class, "sheet paper-tabloid");
+    assert!(sheet.block.contains(&("scale", "1/4″ = 1′-0″".into())), "{:?}", sheet.block);
+    assert!(sheet.tables.iter().any(|table| table.title == "Schedule"));
 }

@@ -221,3 +221,53 @@ fn it_is_pictured_wide_and_narrow_light_and_dark_and_printed() {
     let print = page.print("boathouse-sheet");
     assert!(std::fs::metadata(&print).is_ok_and(|file| file.len() > 10_000), "{print:?} is empty");
 }
+
+#[test]
+#[ignore = "needs the built page and Chromium: cargo verify"]
+fn a_roof_truss_of_ten_panels_with_all_its_figures_takes_few_keys() {
+    let page = Page::open();
+    let mut actions = 0;
+    let mut step = |act: &dyn Fn()| {
+        act();
+        actions += 1;
+    };
+    step(&|| page.press("l"));
+    page.wait_for("#plan-configuration:focus");
+    // What is typed chooses among the names; then every measure in turn.
+    step(&|| page.keys("g"));
+    for (id, text) in
+        [("plan-span", "52'-6\""), ("plan-panels", "10"), ("plan-height", "9'"), ("plan-heel-height", "1'-2 1/2\"")]
+    {
+        step(&|| page.press(key::TAB));
+        page.wait_for(&format!("#{id}:focus"));
+        step(&|| page.keys(text));
+    }
+    step(&|| page.press(key::ENTER));
+    page.wait_for_none(".plan");
+    answered(&page);
+    page.wait_for_text(".tabs", "Joints22");
+    assert!(page.text(CLOSE).contains("They close"), "{}", page.text(CLOSE));
+    assert!(page.text(STANDS).contains("Rigid"), "{}", page.text(STANDS));
+    page.wait_for_text(".tabs", "Supports2");
+    assert!(actions <= 60, "{actions} actions");
+    println!("{actions} actions and typed tokens, by keyboard alone");
+    page.screenshot("laid-out-wide-light", Window::WIDE, Scheme::Light);
+    page.assert_quiet();
+}
+
+#[test]
+#[ignore = "needs the built page and Chromium: cargo verify"]
+fn tables_and_the_drawing_are_saved_and_a_table_is_taken_in() {
+    let page = with_demo(1);
+    page.click(".save-table");
+    let joints = page.saved("boathouse-roof-truss-t3-joints.csv");
+    assert!(joints.starts_with("joint,right,up,loose,exact right,exact up\r\nL0,0,0,,0,0\r\n"), "{joints}");
+    page.click("#save-drawing");
+    let drawing = page.saved("boathouse-roof-truss-t3.svg");
+    assert!(drawing.contains(NOTICE) && drawing.contains("Scale 3/16"), "{drawing}");
+    page.drop_file(".page", "more.csv", "joint,right,up\nX1,10',-2'\n");
+    page.wait_for_text(".tabs", "Joints17");
+    page.drop_file(".page", "wrong.csv", "joint,right,up\nX2,ten,0\n");
+    page.wait_for_text(".message-line", "row 2: right");
+    page.assert_quiet();
+}

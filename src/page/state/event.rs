@@ -4,8 +4,9 @@ use super::camera::Pixel;
 use super::cells::Cell;
 use super::model::{Book, Thing};
 use super::paper::SheetSetup;
+use super::plan::PlanField;
 use crate::checks::{Limits, Progress, Question, Report, Stage};
-use crate::truss::{Role, Truss};
+use crate::truss::{Configuration, Role, Truss};
 use std::rc::Rc;
 
 /// Something that happened.
@@ -111,6 +112,18 @@ pub enum Event {
     LinkClosed,
     /// A print was asked for.
     PrintAsked,
+    /// A layout was to be planned.
+    PlanOpened,
+    /// The configuration of the plan was chosen.
+    PlanConfigured(Configuration),
+    /// A measure of the plan was typed.
+    PlanTyped(PlanField, String),
+    /// The figures of the plan were switched on or off.
+    PlanFigured,
+    /// The planned truss was to be put on the sheet.
+    PlanTaken,
+    /// The plan was put away.
+    PlanClosed,
     /// The choice of paper and scale was opened or put away.
     PrintPanelToggled,
     /// Paper and scale were chosen.
@@ -236,6 +249,8 @@ pub enum Effect {
     Print,
     /// Put the keyboard into the figure entry.
     FocusEntry,
+    /// Put the keyboard into the plan.
+    FocusPlan,
     /// Put the keyboard onto the board.
     FocusBoard,
     /// Bring the open finding into view.

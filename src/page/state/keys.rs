@@ -21,6 +21,7 @@ const fn help(keys: &'static str, words: &'static str) -> KeyHelp {
 pub const KEYS: &[KeyHelp] = &[
     help("1 to 5", "show the evidence for a question"),
     help("P", "pen down to draw, pen up to look and move"),
+    help("L", "lay out a truss of a usual configuration"),
     help("N, Shift N", "select the next or the joint before"),
     help("M", "join two selected joints by a member"),
     help("arrows", "move the selected joints by one step (Shift: by twelve); else move the paper"),
@@ -49,6 +50,7 @@ pub(super) fn event_of(state: &State, press: &KeyPress) -> Option<Event> {
     }
     match key {
         "p" | "P" => Some(Event::PenToggled),
+        "l" | "L" => Some(Event::PlanOpened),
         "f" | "F" => Some(Event::FitAsked),
         "k" | "K" => Some(Event::ShownToggled),
         "+" | "=" => Some(Event::ZoomAsked(1.25)),

@@ -5,6 +5,7 @@ use super::cells::Cell;
 use super::checked::Checked;
 use super::history::History;
 use super::paper::SheetSetup;
+use super::plan::Plan;
 use crate::checks::{Limits, Places, Progress, Question};
 use crate::exact::Point;
 use crate::truss::{FigureId, JointId, MemberId, Selection, SupportId, Truss};
@@ -62,6 +63,8 @@ pub struct State {
     pub theme: Theme,
     /// Whether motion on the screen is to be kept still.
     pub still: bool,
+    /// The layout that is being planned.
+    pub plan: Option<Plan>,
     /// How the sheet is to be printed.
     pub setup: SheetSetup,
     /// Whether paper and scale are being chosen.

@@ -5,6 +5,7 @@ use super::cells::{Cell, Column, edit_of, entry_edit};
 use super::checked::Checked;
 use super::event::{Ask, Effect, Event, KeyPress};
 use super::model::{Book, Drag, Message, Pen, Refused, Shown, Source, State, Thing, Tone};
+use super::plan::{self, Plan};
 use super::{board_events, draw, files, keys};
 use crate::checks::{Adjustable, Report};
 use crate::exchange::read_truss;
@@ -103,6 +104,15 @@ fn apply(state: &mut State, event: Event, effects: &mut Vec<Effect>) {
         Event::LinkAsked => files::make_link(state, effects),
         Event::LinkCopied(done) => link_copied(state, done),
         Event::LinkClosed => state.link = None,
+        Event::PlanOpened => {
+            plan::open(state);
+            effects.push(Effect::FocusPlan);
+        }
+        Event::PlanConfigured(configuration) => on_plan(state, |plan| plan.configuration = configuration),
+        Event::PlanTyped(field, text) => on_plan(state, |plan| *plan.text_mut(field) = text),
+        Event::PlanFigured => on_plan(state, |plan| plan.figured = !plan.figured),
+        Event::PlanTaken => plan::take(state, effects),
+        Event::PlanClosed => state.plan = None,
         Event::PrintPanelToggled => state.print_panel = !state.print_panel,
         Event::SheetChosen(setup) => state.setup = setup,
         Event::PrintAsked => {
@@ -118,6 +128,12 @@ fn apply(state: &mut State, event: Event, effects: &mut Vec<Effect>) {
         Event::MotionAsked(still) => state.still = still,
         Event::HelpToggled => state.help = !state.help,
         Event::MessageClosed => state.message = None,
+    }
+}
+
+fn on_plan(state: &mut State, change: impl FnOnce(&mut Plan)) {
+    if let Some(plan) = &mut state.plan {
+        change(plan);
     }
 }
 
@@ -392,6 +408,7 @@ fn escape(state: &mut State) {
     match () {
         () if state.drag != Drag::None => state.drag = Drag::None,
         () if state.help => state.help = false,
+        () if state.plan.is_some() => state.plan = None,
         () if state.print_panel => state.print_panel = false,
         () if state.link.is_some() => state.link = None,
         () if state.message.is_some() => state.message = None,

@@ -5,6 +5,7 @@ use super::board::Board;
 use super::book::Book;
 use super::evidence::Evidence;
 use super::head::Head;
+use super::plan::Plan;
 use super::sheet::Sheet;
 use super::shell::{self, Shell};
 use super::start::Start;
@@ -124,6 +125,7 @@ impl Component for App {
                 </main>
                 <Book view={view::book_view(state)} truss={state.truss.clone()} pointed={state.pointed} on={on.clone()} />
                 { for state.help.then(|| help(on)) }
+                { for view::plan_view(state).map(|view| html! { <Plan {view} on={on.clone()} /> }) }
                 { work(state, on) }
                 { message(state, on) }
                 { notice() }

@@ -62,6 +62,7 @@ pub(super) fn Head(props: &HeadProps) -> Html {
             </div>
             <nav class="acts" aria-label="the truss as a whole">
                 <button class="act" onclick={act(PageEvent::StartAsked)}>{ "Begin" }</button>
+                <button class="act" id="plan" onclick={act(PageEvent::PlanOpened)}>{ "Lay out" }</button>
                 <OpenFile on={on.clone()} />
                 <button class="act" onclick={act(PageEvent::SaveAsked)}>{ "Save" }</button>
                 <button class="act" id="make-link" onclick={act(PageEvent::LinkAsked)}>{ "Link" }</button>

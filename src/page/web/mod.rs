@@ -10,6 +10,7 @@ mod evidence;
 mod field;
 mod head;
 mod mount;
+mod plan;
 mod sheet;
 mod shell;
 mod start;

@@ -46,6 +46,7 @@ impl Shell {
             // Once the sheet is on the page.
             Effect::Print => drop(Timeout::new(0, || drop(window().print())).forget()),
             Effect::FocusEntry => focus_soon("#entry"),
+            Effect::FocusPlan => focus_soon("#plan-configuration"),
             Effect::FocusBoard => focus_soon("#board"),
             Effect::RevealFinding => {}
             Effect::KeepLimits(text) => drop(LocalStorage::set(LIMITS, text)),

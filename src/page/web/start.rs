@@ -36,6 +36,7 @@ pub(super) fn Start(props: &StartProps) -> Html {
                     <span class="kept-words">{ kept }</span>
                 }
                 <button class={if props.kept.is_some() { "plain" } else { "main" }} id="new-sheet" onclick={act(PageEvent::NewSheet)}>{ "Draw a truss" }</button>
+                <button class="plain" id="plan" onclick={act(PageEvent::PlanOpened)}>{ "Lay out a truss" }</button>
                 <OpenFile on={props.on.clone()} words="Open a file" class="plain" />
             </div>
             <h2>{ "Or look at one" }</h2>
