@@ -161,7 +161,9 @@ pub fn configured(
         Configuration::K => k_webs(&mut draft, measures),
         _ => profiled(&mut draft, configuration, measures),
     }
-    draft.truss.title = format!("{} truss", configuration.name());
+    let mut name = configuration.name().chars();
+    let first = name.next().map(|letter| letter.to_ascii_uppercase());
+    draft.truss.title = format!("{}{} truss", first.map_or_else(String::new, String::from), name.as_str());
     supports(&mut draft.truss);
     if measures.figured {
         figures(&mut draft.truss);
@@ -216,7 +218,11 @@ struct Draft {
 impl Draft {
     fn joint(&mut self, mark: String, x: Rational, y: Rational) -> JointId {
         let sheet = Sheet::of(self.sheet_unit, &Rational::zero());
-        let (x, y) = (sheet.written(&x), sheet.written(&y));
+        let written = |value: &Rational| match value.is_zero() {
+            true => Written { text: "0".into(), value: value.clone() },
+            false => sheet.written(value),
+        };
+        let (x, y) = (written(&x), written(&y));
         self.truss.joints.push(Joint { mark, x, y, loose: false });
         JointId::new(self.truss.joints.len() - 1)
     }
@@ -400,7 +406,8 @@ fn supports(truss: &mut Truss) {
     truss.supports.push(Support { joint: to, kind: SupportKind::Roller { normal: up } });
 }
 
-/// Every figure of a shop drawing: the bottom string with its overall, the heights of the top joints and all lengths.
+/// Every figure of a shop drawing: the bottom string with its overall, level where it is, the height and the heel, and the
+/// lengths that the string does not say.
 fn figures(truss: &mut Truss) {
     let points: Vec<Point> = truss.joints.iter().map(Joint::point).collect();
     let step = truss.step.value.clone();
@@ -420,13 +427,23 @@ fn figures(truss: &mut Truss) {
     let ends = bottom.first().zip(bottom.last()).map(|(first, last)| (first[0], last[1]));
     if let Some((first, last)) = ends {
         kinds.push(run(first, last));
-        kinds.push(FigureKind::Level { joints: vec![first, last] });
-        for (index, point) in points.iter().enumerate().filter(|(_, point)| !point.y.is_zero()) {
-            let value = to_step(&point.y);
+        let string = std::iter::once(first).chain(bottom.iter().map(|ends| ends[1]));
+        let level: Vec<JointId> = string.filter(|id| points[id.index()].y.is_zero()).collect();
+        kinds.push(FigureKind::Level { joints: level });
+        let highest = (0..points.len()).max_by(|&a, &b| points[a].y.cmp(&points[b].y).then(b.cmp(&a)));
+        let heel = (0..points.len()).find(|&i| points[i].x.is_zero() && !points[i].y.is_zero());
+        let mut heights: Vec<usize> = heel.into_iter().chain(highest).collect();
+        heights.dedup_by(|b, a| points[*a].y == points[*b].y);
+        for index in heights {
+            let value = to_step(&points[index].y);
             kinds.push(FigureKind::Rise { from: first, to: JointId::new(index), value });
         }
     }
-    for [from, to] in truss.members.iter().map(Member::ends) {
+    let is_said = |member: &&Member| {
+        let [from, to] = member.ends().map(|id| &points[id.index()]);
+        member.role == Role::BottomChord && from.y == to.y
+    };
+    for [from, to] in truss.members.iter().filter(|member| !is_said(member)).map(Member::ends) {
         let quadrance = (&points[to.index()] - &points[from.index()]).quadrance();
         let steps = Surd::of_quadrance(&quadrance).and_then(|root| root.nearest(&step));
         let exact = || Surd::of_quadrance(&quadrance).and_then(|root| root.rational().cloned());

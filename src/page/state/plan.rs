@@ -100,8 +100,10 @@ impl Plan {
 }
 
 /// Opens the plan, on a new sheet where there is none.
-pub(super) fn open(state: &mut State) {
-    state.source.get_or_insert(Source::Own);
+pub(super) fn open(state: &mut State, effects: &mut Vec<Effect>) {
+    if state.source.is_none() {
+        files::open(state, Truss::default(), Source::Own, effects);
+    }
     state.plan = Some(Plan::usual(&state.truss));
     state.help = false;
 }

@@ -105,7 +105,7 @@ fn apply(state: &mut State, event: Event, effects: &mut Vec<Effect>) {
         Event::LinkCopied(done) => link_copied(state, done),
         Event::LinkClosed => state.link = None,
         Event::PlanOpened => {
-            plan::open(state);
+            plan::open(state, effects);
             effects.push(Effect::FocusPlan);
         }
         Event::PlanConfigured(configuration) => on_plan(state, |plan| plan.configuration = configuration),

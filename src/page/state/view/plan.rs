@@ -61,9 +61,8 @@ fn preview(mut truss: Truss) -> DrawingView {
     let places: Vec<_> = truss.joints.iter().map(|joint| place_of(&joint.point())).collect();
     // Marks and supports need room, strings do not.
     let (width, height) = PREVIEW;
-    let mut camera = Camera::fitted(&places, (width + 60.0, height + 110.0));
-    camera.origin.x -= 18.0;
-    camera.origin.y -= 22.0;
+    let mut camera = Camera::fitted(&places, (width, height + 90.0));
+    camera.origin.y -= 14.0;
     let state = State {
         places: Rc::new(places),
         truss: Rc::new(truss),
