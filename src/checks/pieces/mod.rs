@@ -152,7 +152,7 @@ pub struct Cut {
     pub bevel: String,
 }
 
-/// Two pieces that overlap.
+/// Two whole pieces that overlap: they share some area. Touching is fine.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, Serialize, Deserialize)]
 pub struct Collision {
     /// The joint at which they are neighbours.
