@@ -19,6 +19,7 @@ mod findings;
 mod frame;
 mod limits;
 mod lines;
+pub mod pieces;
 mod placed;
 mod print;
 mod report;

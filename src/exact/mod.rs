@@ -17,6 +17,7 @@ pub mod order;
 mod point;
 mod predicates;
 mod rational;
+mod root_sum;
 mod surd;
 
 pub use arc::{degrees_of, degrees_of_spread, nearest_degrees, nearest_degrees_of_spread, spread_of_degrees};
@@ -32,4 +33,5 @@ pub use predicates::{
     Orientation, compare_directions, in_line, is_between, is_parallel, is_square, on_segment, orientation,
 };
 pub use rational::{Rational, fraction, nearest_multiple, parse_fraction, ratio, whole};
+pub use root_sum::RootSum;
 pub use surd::{Rounded, Surd, ceil_sqrt, floor_sqrt};

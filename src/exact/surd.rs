@@ -65,6 +65,11 @@ impl Surd {
         self.radicand.is_one().then_some(&self.coefficient)
     }
 
+    /// The coefficient and the radicand.
+    pub fn parts(&self) -> (&Rational, &BigInt) {
+        (&self.coefficient, &self.radicand)
+    }
+
     /// The nearest whole number of `step`s, correctly rounded; a tie goes up. `None` when the step is not positive.
     pub fn nearest(&self, step: &Rational) -> Option<Rounded> {
         if !step.is_positive() {
