@@ -2,6 +2,7 @@
 
 use super::entry::{read_figures, read_joint_line, read_member_line, read_support_line};
 use crate::checks::Adjustable;
+use crate::checks::pieces::Shop;
 use crate::exact::Rational;
 use crate::measure::{Sheet, Unit, Written, parse_length, parse_pitch, parse_plain};
 use crate::truss::{
@@ -25,6 +26,8 @@ pub enum Row {
     Sheet,
     /// The limits that the checks go by.
     Limits,
+    /// What pieces are cut from.
+    Stock,
     /// A joint.
     Joint(JointId),
     /// A member.
@@ -94,7 +97,7 @@ pub(super) fn edit_of(truss: &Truss, cell: Cell, text: &str) -> Result<(Edit, St
     let text = text.trim();
     match cell.row {
         Row::Sheet => sheet_edit(truss, cell.column, text),
-        Row::Limits => Err("a limit is no part of the truss".into()),
+        Row::Limits | Row::Stock => Err("this is no part of the truss".into()),
         Row::Joint(id) => joint_edit(truss, id, cell.column, text),
         Row::Member(id) => member_edit(truss, id, cell.column, text),
         Row::Figure(id) => figure_edit(truss, id, cell.column, text),
@@ -117,6 +120,10 @@ pub fn understood(truss: &Truss, cell: Cell, text: &str) -> Option<Result<String
     let result = match (cell.row, cell.column) {
         (_, Column::X | Column::Y) | (Row::Sheet, Column::Step) => length(text),
         (_, Column::NormalX | Column::NormalY) => plain(text),
+        (Row::Stock, _) => {
+            let read = super::stock::read_stock(&Shop::usual(truss.unit), truss, text);
+            return read.err().map(Err);
+        }
         (Row::Limits, Column::Limit(limit)) => {
             let entered = limit.entered(&Default::default(), truss.unit, text);
             return Some(entered.map(|limits| limit.text(&limits, truss.unit)));

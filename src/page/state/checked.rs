@@ -1,6 +1,7 @@
 //! A report together with the truss it is about.
 
-use crate::checks::{DimensionString, Report, Schedule, dimension_strings, schedule};
+use crate::checks::pieces::{Pieces, Shop, pieces};
+use crate::checks::{DimensionString, Limits, Placed, Report, Schedule, dimension_strings, schedule};
 use crate::truss::Truss;
 use std::cell::OnceCell;
 use std::rc::Rc;
@@ -16,12 +17,37 @@ pub struct Checked {
     pub fingerprint: String,
     schedule: OnceCell<Schedule>,
     strings: OnceCell<Vec<DimensionString>>,
+    shop: Shop,
+    pieces: OnceCell<Option<Pieces>>,
 }
+
+/// Pieces are cut here for trusses of at most so many members.
+const MOST_CUT: usize = 300;
 
 impl Checked {
     /// Answers about a truss.
-    pub fn new(truss: Rc<Truss>, report: Rc<Report>, fingerprint: String) -> Checked {
-        Checked { truss, report, fingerprint, schedule: OnceCell::new(), strings: OnceCell::new() }
+    pub fn new(truss: Rc<Truss>, report: Rc<Report>, fingerprint: String, shop: Shop) -> Checked {
+        let (schedule, strings, pieces) = (OnceCell::new(), OnceCell::new(), OnceCell::new());
+        Checked { truss, report, fingerprint, schedule, strings, shop, pieces }
+    }
+
+    /// The same answers, with pieces cut from other stock.
+    pub fn with_shop(&self, shop: Shop) -> Checked {
+        Checked { shop, pieces: OnceCell::new(), ..self.clone() }
+    }
+
+    /// What the pieces are cut from.
+    pub fn shop(&self) -> &Shop {
+        &self.shop
+    }
+
+    /// The pieces, cut when they are first asked for; `None` where there are too many members.
+    pub fn pieces(&self) -> Option<&Pieces> {
+        let cut = || {
+            let placed = Placed::at_layout(&self.truss, self.report.points.clone());
+            pieces(&placed, &self.shop, &Limits::default())
+        };
+        self.pieces.get_or_init(|| (self.truss.members.len() <= MOST_CUT).then(cut)).as_ref()
     }
 
     /// The schedule of equal members, made when it is first asked for.

@@ -41,6 +41,7 @@ pub fn csv_text(state: &State, book: Book) -> String {
             }));
         }
         Book::Schedule => records.extend(schedule_records(state)),
+        Book::Pieces => records.extend(super::view::piece_records(state)),
         Book::Strings => {
             records.push(header(&["along", "overall", "values", "joints"]));
             let strings = state.fresh().map(|checked| checked.strings()).unwrap_or_default();

@@ -25,6 +25,7 @@ mod model;
 mod paper;
 mod plan;
 mod snap;
+mod stock;
 mod update;
 pub mod view;
 

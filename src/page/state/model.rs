@@ -6,6 +6,7 @@ use super::checked::Checked;
 use super::history::History;
 use super::paper::SheetSetup;
 use super::plan::Plan;
+use crate::checks::pieces::Shop;
 use crate::checks::{Limits, Places, Progress, Question};
 use crate::exact::Point;
 use crate::truss::{FigureId, JointId, MemberId, Selection, SupportId, Truss};
@@ -26,6 +27,8 @@ pub struct State {
     pub progress: Option<Progress>,
     /// The limits that the checks go by.
     pub limits: Rc<Limits>,
+    /// What pieces are cut from; `None` is what is usual for the unit.
+    pub shop: Option<Rc<Shop>>,
     /// Where the truss came from; `None` on the first screen.
     pub source: Option<Source>,
     /// The question whose evidence is shown.
@@ -145,6 +148,8 @@ pub enum Book {
     Schedule,
     /// Dimension strings that add up.
     Strings,
+    /// What is cut for each member, with its depth.
+    Pieces,
 }
 
 /// Whether pressing the board draws.
@@ -263,6 +268,11 @@ pub struct Refused {
 }
 
 impl State {
+    /// What pieces are cut from.
+    pub fn shop(&self) -> Shop {
+        self.shop.as_ref().map_or_else(|| Shop::usual(self.truss.unit), |shop| (**shop).clone())
+    }
+
     /// The answers, when they are about the truss as it is now.
     pub fn fresh(&self) -> Option<&Rc<Checked>> {
         self.checked.as_ref().filter(|checked| Rc::ptr_eq(&checked.truss, &self.truss))
@@ -338,8 +348,8 @@ impl State {
 
 impl Book {
     /// Every table, in order.
-    pub const ALL: [Book; 6] =
-        [Book::Joints, Book::Members, Book::Figures, Book::Supports, Book::Schedule, Book::Strings];
+    pub const ALL: [Book; 7] =
+        [Book::Joints, Book::Members, Book::Figures, Book::Supports, Book::Schedule, Book::Strings, Book::Pieces];
 
     /// Its title.
     pub fn title(self) -> &'static str {
@@ -350,6 +360,7 @@ impl Book {
             Book::Supports => "Supports",
             Book::Schedule => "Schedule",
             Book::Strings => "Strings",
+            Book::Pieces => "Pieces",
         }
     }
 }

@@ -1,7 +1,7 @@
 //! The one function in which the page changes.
 
 use super::camera::{Camera, Pixel};
-use super::cells::{Cell, Column, edit_of, entry_edit};
+use super::cells::{Cell, Column, Row, edit_of, entry_edit};
 use super::checked::Checked;
 use super::event::{Ask, Effect, Event, KeyPress};
 use super::model::{Book, Drag, Message, Pen, Refused, Shown, Source, State, Thing, Tone};
@@ -210,7 +210,7 @@ fn answered(state: &mut State, revision: u64, report: Rc<Report>, fingerprint: S
     }
     state.progress = None;
     let findings = report.findings.len();
-    state.checked = Some(Rc::new(Checked::new(state.truss.clone(), report, fingerprint)));
+    state.checked = Some(Rc::new(Checked::new(state.truss.clone(), report, fingerprint, state.shop())));
     state.open_finding = state.open_finding.filter(|&index| index < findings);
     if state.fitted && state.drag == Drag::None && state.pen == Pen::Up {
         fit(state);
@@ -315,7 +315,20 @@ fn enter_limit(state: &mut State, limit: Adjustable, text: &str, effects: &mut V
     Ok(())
 }
 
+/// Pieces are cut anew from the stock that a line names.
+fn enter_stock(state: &mut State, text: &str) -> Result<(), String> {
+    let shop = super::stock::read_stock(&state.shop(), &state.truss, text)?;
+    state.checked = state.checked.as_ref().map(|checked| Rc::new(checked.with_shop(shop.clone())));
+    state.shop = Some(Rc::new(shop));
+    Ok(())
+}
+
 fn enter_cell(state: &mut State, cell: Cell, text: String, effects: &mut Vec<Effect>) {
+    if cell.row == Row::Stock {
+        let entered = enter_stock(state, &text);
+        state.refused = entered.err().map(|error| Refused { cell, text, error });
+        return;
+    }
     if let Column::Limit(limit) = cell.column {
         let entered = enter_limit(state, limit, &text, effects);
         state.refused = entered.err().map(|error| Refused { cell, text, error });

@@ -60,6 +60,7 @@ fn same_drawing(a: &State, b: &State) -> bool {
         && a.shown == b.shown
         && a.question == b.question
         && a.open_finding == b.open_finding
+        && (a.book == crate::page::state::Book::Pieces) == (b.book == crate::page::state::Book::Pieces)
 }
 
 impl Component for App {

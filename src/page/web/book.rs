@@ -97,7 +97,8 @@ fn table_cell(props: &BookProps, at: (usize, usize), view: &CellView) -> Html {
         }
         (None, _) => html! { { &view.text } },
     };
-    html! { <td {class}>{ body }</td> }
+    let colspan = (view.kind == CellKind::Wide).then_some("7");
+    html! { <td {class} {colspan}>{ body }</td> }
 }
 
 fn add_line(props: &BookProps, line: &CellView) -> Html {
@@ -105,7 +106,7 @@ fn add_line(props: &BookProps, line: &CellView) -> Html {
     let at = (props.view.rows.len(), 0);
     html! {
         <div class="add-line">
-            <span>{ "add" }</span>
+            <span>{ if props.view.book == Table::Pieces { "cut from" } else { "add" } }</span>
             <Field view={line.clone()} {cell} {at} truss={props.truss.clone()} placeholder={props.view.example} on={props.on.clone()} />
         </div>
     }

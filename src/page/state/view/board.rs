@@ -4,6 +4,7 @@ use super::dimensions::{draw_corners, draw_lengths, draw_strings};
 use super::labels::{Anchor, LabelView, Labels};
 use super::misfits::{draw_misfits, times};
 use super::path::{PathText, PathView, tenths};
+use super::pieces::draw_pieces;
 use crate::checks::{Finding, Level, Question, Rule};
 use crate::exact::order;
 use crate::measure::pretty;
@@ -111,6 +112,7 @@ pub fn drawing_view(state: &State) -> DrawingView {
     draw_supports(&board, &mut paths);
     let strings = draw_strings(&board, &mut labels, &mut paths);
     draw_members(&board, &mut paths);
+    draw_pieces(&board, &mut paths);
     draw_findings(&board, &mut paths);
     draw_joints(&board, &mut paths);
     draw_marks(&board, &mut labels);

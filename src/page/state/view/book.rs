@@ -15,7 +15,7 @@ pub struct BookView {
     /// Which.
     pub book: Book,
     /// How many of each there are, where it is known without working it out.
-    pub counts: [Option<usize>; 6],
+    pub counts: [Option<usize>; 7],
     /// The rows shown.
     pub rows: Vec<RowView>,
     /// The first row shown.
@@ -61,6 +61,8 @@ pub struct CellView {
 pub enum CellKind {
     /// Only shown; as text.
     Words,
+    /// Only shown; as text over the whole row.
+    Wide,
     /// Only shown; as a number.
     Number,
     /// Typed text.
@@ -84,6 +86,7 @@ pub fn column_titles(book: Book) -> &'static [&'static str] {
         Book::Figures => &["figure", "kind", "between", "printed", "to a step of", "the places give", "misfit"],
         Book::Supports => &["joint", "kind", "holds right", "holds up"],
         Book::Schedule => &["off", "opposite hand", "role", "length", "bevel", "degrees", "quadrance", "members"],
+        Book::Pieces => &super::pieces::TITLES,
         Book::Strings => &["along", "string as printed, adding up exactly", "roundings", "joints"],
     }
 }
@@ -99,9 +102,10 @@ pub fn book_view(state: &State) -> BookView {
         Book::Supports => truss.supports.len(),
         Book::Schedule => checked.map_or(0, |c| c.schedule().groups.len() + c.schedule().totals.len()),
         Book::Strings => checked.map_or(0, |c| c.strings().len()),
+        Book::Pieces => checked.map_or(0, |c| super::pieces::row_count(c)),
     };
     let counts = [truss.joints.len(), truss.members.len(), truss.figures.len(), truss.supports.len()].map(Some);
-    let counts = [counts[0], counts[1], counts[2], counts[3], None, None];
+    let counts = [counts[0], counts[1], counts[2], counts[3], None, None, None];
     let last_start = total.saturating_sub(1) / PAGE_ROWS * PAGE_ROWS;
     let start = (state.book_start / PAGE_ROWS * PAGE_ROWS).min(last_start);
     let page = start..(start + PAGE_ROWS).min(total);
@@ -130,6 +134,7 @@ impl Maker<'_> {
             Book::Joints => (Row::NewJoint, "L2  13'-4\"  0"),
             Book::Members => (Row::NewMember, "L0 U1 top chord"),
             Book::Supports => (Row::NewSupport, "L0 pin"),
+            Book::Pieces => (Row::Stock, "web 3 1/2\"   ·   top chord 5 1/2\" top   ·   all 90 mm   ·   gap 1/8\""),
             Book::Figures | Book::Schedule | Book::Strings => return (None, ""),
         };
         let view = self.entered(row, Column::Line, String::new(), CellKind::Text, "add a line".into());
@@ -144,6 +149,10 @@ impl Maker<'_> {
             Book::Supports => self.support(SupportId::new(index)),
             Book::Schedule => self.scheduled(index),
             Book::Strings => self.string(index),
+            Book::Pieces => match self.checked {
+                Some(checked) => super::pieces::row(checked, index),
+                None => RowView { things: Vec::new(), can_remove: false, class: "row", cells: Vec::new() },
+            },
         }
     }
 

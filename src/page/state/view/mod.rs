@@ -9,6 +9,7 @@ mod labels;
 mod misfits;
 mod overlay;
 mod path;
+mod pieces;
 mod plan;
 mod sheet;
 mod svg;
@@ -20,6 +21,7 @@ pub use evidence::{EvidenceLine, EvidenceView, FindingView, LimitView, MendView,
 pub use labels::{Anchor, LabelView};
 pub use overlay::{OverlayView, overlay_view};
 pub use path::PathView;
+pub(super) use pieces::piece_records;
 pub use plan::{PREVIEW, PlanView, plan_view};
 pub use sheet::{SheetTable, SheetView, sheet_view};
 pub use svg::svg_text;
