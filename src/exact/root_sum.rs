@@ -351,4 +351,21 @@ mod tests {
         }
         assert!(RootSum::from(ratio(1, 3)).enclosure(8).is_exact());
     }
+
+    #[test]
+    fn quick_rounding_and_units_agree_with_the_slow_way() {
+        let mut scatter = crate::exact::modular::Scatter::new(5);
+        let mut draw = |end: u64| (scatter.draw() % end) as i64;
+        for _ in 0..400 {
+            let terms = 1 + draw(4);
+            let sum = (0..terms).fold(RootSum::from(ratio(draw(99) - 49, 1 + draw(7))), |sum, _| {
+                &sum + &root(draw(60)).scaled(&ratio(draw(41) - 20, 1 + draw(9)))
+            });
+            let step = ratio(1 + draw(3), 1 + draw(16));
+            assert_eq!(sum.nearest(&step), sum.nearest_over(&number(1), &step), "{sum:?} {step}");
+            let below = RootSum::from(Rational::new(sum.units_below(20), BigInt::one() << 20u32));
+            let off = (&sum - &below).scaled(&whole(1 << 20));
+            assert!(off.sign() != Ordering::Less && off.compare(&number(2)) != Ordering::Greater, "{sum:?}");
+        }
+    }
 }
