@@ -147,6 +147,11 @@ fn pieces_of_a_symmetrical_gable_do_not_overlap() {
         let cut = usual(&truss);
         assert!(cut.pieces.iter().all(|piece| piece.left == Left::Whole), "{run} {rise}");
         assert!(cut.collisions.is_empty(), "{run} {rise}: {:?}", cut.collisions);
+        for piece in &cut.pieces {
+            for length in [&piece.upper, &piece.lower, &piece.line] {
+                assert!(length.enclosure.lo() <= piece.long.enclosure.hi(), "{piece:?}");
+            }
+        }
         // The king post stops against both rafters, and the webs against chord and post.
         let shape = |member: usize, end: usize| &cut.pieces[member].ends[end].shape;
         assert!(matches!(shape(9, 1), EndShape::Two { notch: false, .. }), "{:?}", shape(9, 1));
