@@ -147,6 +147,11 @@ fn pieces_of_a_symmetrical_gable_do_not_overlap() {
         let cut = usual(&truss);
         assert!(cut.pieces.iter().all(|piece| piece.left == Left::Whole), "{run} {rise}");
         assert!(cut.collisions.is_empty(), "{run} {rise}: {:?}", cut.collisions);
+        for piece in &cut.pieces {
+            for length in [&piece.upper, &piece.lower, &piece.line] {
+                assert!(length.enclosure.lo() <= piece.long.enclosure.hi(), "{piece:?}");
+            }
+        }
         // The king post stops against both rafters, and the webs against chord and post.
         let shape = |member: usize, end: usize| &cut.pieces[member].ends[end].shape;
         assert!(matches!(shape(9, 1), EndShape::Two { notch: false, .. }), "{:?}", shape(9, 1));
@@ -270,6 +275,77 @@ fn random_trusses_with_random_settings_hold_their_laws() {
             assert!(has_parallel_edges(&truss, piece), "{piece:?}");
         }
     }
+}
+
+/// The part of an outline to the left of the line from `a` to `b`.
+fn clipped(outline: &[Point], a: &Point, b: &Point) -> Vec<Point> {
+    let side = |p: &Point| (b - a).cross(&(p - a));
+    let mut kept = Vec::new();
+    for (i, p) in outline.iter().enumerate() {
+        let q = &outline[(i + 1) % outline.len()];
+        let (at_p, at_q) = (side(p), side(q));
+        if at_p >= whole(0) {
+            kept.push(p.clone());
+        }
+        if &at_p * &at_q < whole(0) {
+            kept.push(p + &(q - p).scaled(&(&at_p / (&at_p - &at_q))));
+        }
+    }
+    kept
+}
+
+/// True when two convex outlines share some area: the slow twin, which cuts one by every edge of the other.
+fn share_area(a: &[Point], b: &[Point]) -> bool {
+    let common = (0..b.len()).fold(a.to_vec(), |rest, i| clipped(&rest, &b[i], &b[(i + 1) % b.len()]));
+    let cross = |i: usize| {
+        let (p, q) = (&common[i], &common[(i + 1) % common.len()]);
+        &p.x * &q.y - &p.y * &q.x
+    };
+    (0..common.len()).map(cross).sum::<Rational>() > whole(0)
+}
+
+#[test]
+fn collisions_are_those_that_clipping_finds() {
+    let ways =
+        [(5, 0), (4, 3), (3, 4), (0, 5), (-3, 4), (-4, 3), (-5, 0), (-4, -3), (-3, -4), (0, -5), (3, -4), (4, -3)];
+    let mut scatter = Scatter::new(39);
+    let (mut collided, mut clear) = (0, 0);
+    for _ in 0..150 {
+        let mut places = vec![(0, 0)];
+        places.extend(ways.iter().filter(|_| scatter.below(3) == 0).map(|(x, y)| (12 * x, 12 * y)));
+        let members: Vec<_> = (1..places.len()).map(|far| (0, far)).collect();
+        let roles: Vec<_> = members.iter().map(|_| Role::ALL[scatter.below(5) as usize]).collect();
+        let truss = in_roles(frame(&places, &members), &roles);
+        let mut shop = Shop::usual(truss.unit);
+        for role in Role::ALL {
+            shop.stock_mut(role).depth = ratio(4 + scatter.below(40) as i64, 8);
+        }
+        let cut = cut_with(&truss, &shop);
+        let outline = |member: usize| -> Option<Vec<Point>> {
+            let piece = &cut.pieces[member];
+            let is_convex = piece.ends.iter().all(|end| !matches!(end.shape, EndShape::Two { notch: true, .. }));
+            let corner = |[x, y]: &[Interval; 2]| {
+                assert!(x.is_exact() && y.is_exact());
+                Point { x: x.lo().clone(), y: y.lo().clone() }
+            };
+            (is_convex && piece.left == Left::Whole).then(|| piece.outline.iter().map(corner).collect())
+        };
+        // The ways go round counter-clockwise, and so do the members.
+        for member in 0..members.len() {
+            let next = (member + 1) % members.len();
+            if member == next {
+                continue;
+            }
+            let Some((a, b)) = outline(member).zip(outline(next)) else { continue };
+            let told = cut.collisions.iter().any(|collision| {
+                let pair = collision.members.map(|member| member.index());
+                pair == [member, next] || pair == [next, member]
+            });
+            assert_eq!(told, share_area(&a, &b), "{truss:?} {member} {next}");
+            *(if told { &mut collided } else { &mut clear }) += 1;
+        }
+    }
+    assert!(collided > 20 && clear > 100, "{collided} {clear}");
 }
 
 /// True when the edge from the first corner to the second runs along the member.

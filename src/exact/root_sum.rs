@@ -108,7 +108,8 @@ impl RootSum {
         (self - other).sign()
     }
 
-    /// Whole numbers around the value times the third number, which is positive.
+    /// Whole numbers around the value times 2^bits and times the third number, which is whole and positive. They are at most
+    /// one unit apart for each root.
     fn fixed(&self, bits: u32) -> (BigInt, BigInt, BigInt) {
         let common = self.terms.values().fold(BigInt::one(), |common, c| common.lcm(c.denom()));
         let (mut lo, mut hi) = (BigInt::zero(), BigInt::zero());
@@ -130,7 +131,7 @@ impl RootSum {
                 hi += size + 1;
             }
         }
-        (lo, hi, common << bits)
+        (lo, hi, common)
     }
 
     /// An enclosure at most 2^-bits wide; one number only when it is written without a root.
@@ -140,14 +141,43 @@ impl RootSum {
         }
         // Each root leaves a unit open, and moving outward two more.
         let bits = bits.saturating_add(2 + self.terms.len().ilog2());
-        let (lo, hi, unit) = self.fixed(bits.saturating_add(2));
-        Interval::between(Rational::new(lo, unit.clone()), Rational::new(hi, unit)).outward(bits)
+        let (lo, hi, common) = self.fixed(bits);
+        let unit = BigInt::one() << bits;
+        let (lo, hi) = (lo.div_floor(&common), -(-hi).div_floor(&common));
+        Interval::between(Rational::new(lo, unit.clone()), Rational::new(hi, unit))
+    }
+
+    /// A whole number of units of 2^-bits that is at most two units below the value, and not above it.
+    pub fn units_below(&self, bits: u32) -> BigInt {
+        let more = 1 + self.terms.len().checked_ilog2().unwrap_or(0);
+        let (lo, _, common) = self.fixed(bits.saturating_add(more));
+        lo.div_floor(&(common << more))
     }
 
     /// The nearest whole number of `step`s, correctly rounded; a tie goes away from zero. `None` when the step is not
     /// positive.
     pub fn nearest(&self, step: &Rational) -> Option<Rounded> {
-        self.nearest_over(&RootSum::from(whole(1)), step)
+        if !step.is_positive() {
+            return None;
+        }
+        self.quickly_nearest(step).or_else(|| self.nearest_over(&RootSum::from(whole(1)), step))
+    }
+
+    /// The same where a first enclosure is enough.
+    fn quickly_nearest(&self, step: &Rational) -> Option<Rounded> {
+        let scaled = self.scaled(&step.recip());
+        if let Some(value) = scaled.rational() {
+            let exact = value.is_integer();
+            return nearest_multiple(&value, &whole(1)).map(|steps| Rounded { steps, exact });
+        }
+        let (lo, hi, common) = scaled.fixed(BITS);
+        let unit = common << BITS;
+        let twice: BigInt = &lo * 2 + &unit;
+        let (steps, rest) = twice.div_mod_floor(&(&unit * 2));
+        let value = &steps * &unit;
+        // Between two borders, and not where it could be the value itself.
+        let is_certain = !rest.is_zero() && rest + (&hi - &lo) * 2 < &unit * 2 && (lo > value || hi < value);
+        is_certain.then_some(Rounded { steps, exact: false })
     }
 
     /// The quotient by a positive `divisor`, rounded likewise. `None` when either is not positive.
@@ -320,5 +350,22 @@ mod tests {
             assert!(width.is_positive() && width <= whole(1), "{bits} bits");
         }
         assert!(RootSum::from(ratio(1, 3)).enclosure(8).is_exact());
+    }
+
+    #[test]
+    fn quick_rounding_and_units_agree_with_the_slow_way() {
+        let mut scatter = crate::exact::modular::Scatter::new(5);
+        let mut draw = |end: u64| (scatter.draw() % end) as i64;
+        for _ in 0..400 {
+            let terms = 1 + draw(4);
+            let sum = (0..terms).fold(RootSum::from(ratio(draw(99) - 49, 1 + draw(7))), |sum, _| {
+                &sum + &root(draw(60)).scaled(&ratio(draw(41) - 20, 1 + draw(9)))
+            });
+            let step = ratio(1 + draw(3), 1 + draw(16));
+            assert_eq!(sum.nearest(&step), sum.nearest_over(&number(1), &step), "{sum:?} {step}");
+            let below = RootSum::from(Rational::new(sum.units_below(20), BigInt::one() << 20u32));
+            let off = (&sum - &below).scaled(&whole(1 << 20));
+            assert!(off.sign() != Ordering::Less && off.compare(&number(2)) != Ordering::Greater, "{sum:?}");
+        }
     }
 }

@@ -129,10 +129,10 @@ impl End {
         &self.slices[self.slices.len() - 1].left
     }
 
-    /// The same at the long point.
+    /// The same at the long point: the corner nearest to the joint.
     pub(super) fn at_long_point(&self) -> &RootSum {
-        let (right, left) = (self.at_right(), self.at_left());
-        if right.compare(left) == Ordering::Less { right } else { left }
+        let corners = [self.at_left()].into_iter().chain(self.vertex.as_ref().map(|vertex| &vertex.along));
+        corners.fold(self.at_right(), |long, at| if at.compare(long) == Ordering::Less { at } else { long })
     }
 
     /// The same at the working line.

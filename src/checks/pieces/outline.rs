@@ -4,7 +4,8 @@ use super::Left;
 use super::end::{End, Vertex};
 use crate::exact::{Interval, Rational, RootSum, ratio, whole};
 use num_bigint::BigInt;
-use num_traits::{One, Signed};
+use num_traits::Signed;
+use std::borrow::Cow;
 use std::cmp::Ordering;
 
 /// Fractional bits of a corner's near place.
@@ -69,10 +70,10 @@ impl Body {
     }
 
     /// The convex parts of the outline: itself, unless there is a notch.
-    pub(super) fn parts(&self) -> Vec<Vec<Corner>> {
+    pub(super) fn parts(&self) -> Vec<Cow<'_, [Corner]>> {
         let [first, last] = &self.ends;
         if !first.is_notch && !last.is_notch {
-            return vec![self.outline.clone()];
+            return vec![Cow::Borrowed(self.outline.as_slice())];
         }
         let [lower, upper] = first.edges();
         let mut borders = vec![lower];
@@ -86,7 +87,7 @@ impl Body {
         notches.dedup_by(|a, b| a.compare(b) == Ordering::Equal);
         borders.extend(notches);
         borders.push(upper);
-        borders.windows(2).map(|between| self.part([&between[0], &between[1]])).collect()
+        borders.windows(2).map(|between| Cow::Owned(self.part([&between[0], &between[1]]))).collect()
     }
 
     /// The part between two lines along the member.
@@ -124,10 +125,7 @@ fn seen(vertex: &Vertex, is_back: bool) -> RootSum {
 
 impl Corner {
     fn new(exact: [RootSum; 2]) -> Corner {
-        let near = [0, 1].map(|axis| {
-            let enclosure: Interval = exact[axis].enclosure(NEAR);
-            (enclosure.lo() * whole(BigInt::one() << NEAR)).floor().to_integer()
-        });
+        let near = [0, 1].map(|axis| exact[axis].units_below(NEAR));
         Corner { exact, near }
     }
 
@@ -153,7 +151,7 @@ impl Corner {
         let (v, w) = (self.near_to(after), self.near_to(before));
         let (cross, dot) = (&v[0] * &w[1] - &v[1] * &w[0], &v[0] * &w[0] + &v[1] * &w[1]);
         let margin = margin(&v, &w);
-        let is_far = (&cross - &margin) * 100 > (&dot + &margin) * 27 && &cross > &margin;
+        let is_far = (&cross - &margin) * 100 > (&dot + &margin) * 27 && cross > margin;
         if is_far || dot < -&margin {
             return false;
         }

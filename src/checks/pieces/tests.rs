@@ -137,9 +137,8 @@ fn a_heel_is_mitred_where_both_chords_end_and_stops_where_one_runs_through() {
 
 #[test]
 fn mitres_of_unequal_depths_go_through_both_meetings_of_edges() {
-    let mut shop = Shop::default();
-    shop.bottom_chord = Stock { depth: whole(4), line: Line::Centre };
-    shop.top_chord = Stock { depth: whole(2), line: Line::Centre };
+    let of_depth = |depth| Stock { depth: whole(depth), line: Line::Centre };
+    let shop = Shop { bottom_chord: of_depth(4), top_chord: of_depth(2), ..Shop::default() };
     // A square corner: outer edges meet at (-1, -2), inner ones at (1, 2).
     let cut = cut_with(&truss(&[(0, 0), (0, 60), (60, 0)], &[(0, 1, T), (0, 2, B)]), &shop);
     for piece in &cut.pieces {
@@ -161,6 +160,10 @@ fn a_web_between_a_chord_and_a_post_has_a_double_cut() {
     };
     assert_eq!((upper.against, lower.against, *notch), (Some(MemberId::new(2)), Some(MemberId::new(1)), false));
     assert_eq!(cut.pieces[3].outline.len(), 5);
+    // The point lies on the working line, further out than both edges' ends.
+    let [upper, lower, line, long, deduction, _] = texts(&cut.pieces[3]);
+    assert_eq!((upper, lower, deduction), ("6'-8 5/8\"", "6'-8 5/8\"", "2 1/2\""));
+    assert_eq!((line, long), ("6'-10 3/8\"", "6'-10 3/8\""));
     // The point lies where the edges of chord and post meet.
     let point = &cut.pieces[3].outline[4];
     assert!(point.iter().all(|part| *part == Interval::exactly(ratio(7, 4))), "{point:?}");
