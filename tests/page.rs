@@ -2,7 +2,9 @@
 
 use chordwright::checks::{Progress, Question, Rule, Stage, report};
 use chordwright::exact::{Point, ratio, whole};
-use chordwright::page::state::view::{drawing_view, evidence_view, head_view, plan_view, sheet_view, work_view};
+use chordwright::page::state::view::{
+    book_view, drawing_view, evidence_view, head_view, plan_view, sheet_view, work_view,
+};
 use chordwright::page::state::{
     Book, Button, Cell, Column, Effect, Event, KeyPress, Modifiers, Paper, Pen, Pixel, PlanField, PointerAct, Row,
     SheetSetup, State, Thing, Tone, update,
@@ -443,4 +445,34 @@ fn paper_and_scale_are_chosen_before_the_print() {
     assert_eq!(sheet.class, "sheet paper-tabloid");
     assert!(sheet.block.contains(&("scale", "1/4″ = 1′-0″".into())), "{:?}", sheet.block);
     assert!(sheet.tables.iter().any(|table| table.title == "Schedule"));
+}
+
+#[test]
+fn pieces_are_cut_from_the_stock_that_is_typed_and_drawn_on_the_board() {
+    let mut page = Page::new();
+    page.send(Event::DemoChosen(0));
+    assert!(!drawing_view(&page.state).paths.iter().any(|path| path.class == "piece"));
+    page.send(Event::BookChosen(Book::Pieces));
+    let outlines = |page: &Page| {
+        let drawing = drawing_view(&page.state);
+        let path = drawing.paths.iter().find(|path| path.class == "piece").expect("pieces are drawn").d.clone();
+        path.matches('Z').count()
+    };
+    assert_eq!(outlines(&page), page.state.truss.members.len());
+    // A post between the chords: half a depth less at its foot.
+    let post = |page: &Page| {
+        let book = book_view(&page.state);
+        let row = book.rows.iter().find(|row| row.cells[0].text == "P4").expect("the middle post").clone();
+        row.cells.iter().map(|cell| cell.text.clone()).collect::<Vec<_>>()
+    };
+    assert!(post(&page)[1] == "3 1/2″" && post(&page)[5].contains("less 1 3/4″"), "{:?}", post(&page));
+    page.cell(Row::Stock, Column::Line, "bottom chord 5 1/2\"");
+    assert!(post(&page)[5].contains("less 2 3/4″"), "{:?}", post(&page));
+    page.cell(Row::Stock, Column::Line, "gap 1/4\"");
+    assert!(post(&page)[5].contains("less 3″"), "{:?}", post(&page));
+    page.cell(Row::Stock, Column::Line, "rope 2\"");
+    let refused = page.state.refused.clone().expect("it is refused");
+    assert!(refused.error.contains("expected a role and its depth"), "{}", refused.error);
+    let table = chordwright::page::state::csv_text(&page.state, Book::Pieces);
+    assert_eq!(table.lines().count(), page.state.truss.members.len() + 2, "a row for each, the titles and the notice");
 }
