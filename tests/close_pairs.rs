@@ -3,10 +3,9 @@
 mod close_help;
 
 use chordwright::checks::{CloseState, Effort, Evidence, Finding, Rule, Suspect, close};
-use chordwright::exact::{Point, Rational};
 use chordwright::truss::{FigureKind, JointId, Truss};
 use close_help::generate::{Dice, SHAPES, clean, slip};
-use close_help::q;
+use close_help::{agrees, q};
 use std::collections::HashSet;
 
 /// Two places among the figures that share no joint.
@@ -18,25 +17,6 @@ fn two_apart(truss: &Truss, dice: &mut Dice) -> [usize; 2] {
             return [a.min(b), a.max(b)];
         }
     }
-}
-
-/// True when places agree with every figure but those left out, by arithmetic of this test's own.
-fn agrees(truss: &Truss, places: &[Point], left_out: &[usize]) -> bool {
-    let half = q(1, 32);
-    let leg = |from: &JointId, to: &JointId| &places[to.index()] - &places[from.index()];
-    let near = |found: &Rational, printed: &Rational| *found >= printed - &half && *found <= printed + &half;
-    truss.figures.iter().enumerate().filter(|(index, _)| !left_out.contains(index)).all(|(_, figure)| {
-        match &figure.kind {
-            FigureKind::Run { from, to, value } => near(&leg(from, to).x, &value.value),
-            FigureKind::Rise { from, to, value } => near(&leg(from, to).y, &value.value),
-            FigureKind::Length { from, to, value } => {
-                let (least, most) = (&value.value - &half, &value.value + &half);
-                let found = leg(from, to).quadrance();
-                found >= &least * &least && found <= &most * &most
-            }
-            other => panic!("no {} is planted", other.name()),
-        }
-    })
 }
 
 fn figures(blamed: &[Suspect]) -> Vec<usize> {

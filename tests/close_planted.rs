@@ -3,32 +3,9 @@
 mod close_help;
 
 use chordwright::checks::{CloseAnswer, CloseState, Effort, Proof, close};
-use chordwright::exact::{Point, Rational, quadrance, whole};
-use chordwright::truss::{FigureKind, JointId, Truss};
+use chordwright::truss::Truss;
 use close_help::generate::{Dice, SHAPES, clean, mixed, slip, slip_of_any_kind};
-use close_help::q;
-use num_traits::Zero;
-
-/// True when places agree with every figure but one, by arithmetic of this test's own.
-///
-/// Figures are runs, rises and lengths here; the intervals are those of the file format's contract.
-fn agrees(truss: &Truss, places: &[Point], disregarded: Option<usize>) -> bool {
-    let at = |id: JointId| &places[id.index()];
-    truss.figures.iter().enumerate().filter(|(index, _)| Some(*index) != disregarded).all(|(_, figure)| {
-        let half = truss.step_of(figure) / whole(2);
-        let within = |value: &Rational, printed: &Rational| *value >= printed - &half && *value <= printed + &half;
-        match &figure.kind {
-            FigureKind::Run { from, to, value } => within(&(&at(*to).x - &at(*from).x), &value.value),
-            FigureKind::Rise { from, to, value } => within(&(&at(*to).y - &at(*from).y), &value.value),
-            FigureKind::Length { from, to, value } => {
-                let (least, most) = ((&value.value - &half).max(Rational::zero()), &value.value + &half);
-                let found = quadrance(at(*from), at(*to));
-                found >= &least * &least && found <= &most * &most
-            }
-            other => panic!("no {} is planted", other.name()),
-        }
-    })
-}
+use close_help::{agrees, q};
 
 fn asked(truss: &Truss) -> CloseAnswer {
     close(truss, &Effort::default()).0
@@ -43,7 +20,7 @@ fn every_clean_drawing_closes_with_a_layout_that_agrees() {
                 let answer = asked(&planted.truss);
                 let what = format!("{shape:?}, {panels} panels, seed {seed}: {}", answer.summary);
                 assert_eq!((answer.state, answer.proof), (CloseState::Closes, Proof::Layout), "{what}");
-                assert!(agrees(&planted.truss, &answer.layout.expect("a layout"), None), "{what}");
+                assert!(agrees(&planted.truss, &answer.layout.expect("a layout"), &[]), "{what}");
             }
         }
     }
@@ -87,15 +64,12 @@ fn one_slip(truth: Truss, panels: usize, seed: u64, tally: &mut Tally) {
     match answer.state {
         CloseState::Closes => {
             tally.still_close += 1;
-            assert!(agrees(&truss, &answer.layout.expect("a layout"), None), "never a false word");
+            assert!(agrees(&truss, &answer.layout.expect("a layout"), &[]), "never a false word");
         }
         CloseState::DoesNotClose => {
             tally.excluded += 1;
             for suspect in &answer.suspects {
-                assert!(
-                    agrees(&truss, &suspect.layout, Some(suspect.figure.index())),
-                    "a suspect is proved by a layout"
-                );
+                assert!(agrees(&truss, &suspect.layout, &[suspect.figure.index()]), "a suspect is proved by a layout");
             }
             let place = answer.suspects.iter().position(|suspect| suspect.figure.index() == figure);
             tally.suspected += usize::from(place.is_some());

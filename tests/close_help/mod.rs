@@ -3,7 +3,7 @@
 
 pub mod generate;
 
-use chordwright::exact::{Rational, parse_fraction, ratio, whole};
+use chordwright::exact::{Point, Rational, parse_fraction, ratio, whole};
 use chordwright::measure::{Unit, Written};
 use chordwright::truss::{Figure, FigureKind, Joint, JointId, Member, Role, Truss};
 
@@ -130,4 +130,24 @@ pub fn q(n: i64, d: i64) -> Rational {
 /// The whole number `n`.
 pub fn w(n: i64) -> Rational {
     whole(n)
+}
+
+/// True when places agree with every figure but those left out, by arithmetic of the tests' own: runs, rises and lengths, with
+/// the intervals of the file format's contract.
+pub fn agrees(truss: &Truss, places: &[Point], left_out: &[usize]) -> bool {
+    let leg = |from: JointId, to: JointId| &places[to.index()] - &places[from.index()];
+    truss.figures.iter().enumerate().filter(|(index, _)| !left_out.contains(index)).all(|(_, figure)| {
+        let half = truss.step_of(figure) / whole(2);
+        let within = |found: &Rational, printed: &Rational| *found >= printed - &half && *found <= printed + &half;
+        match &figure.kind {
+            FigureKind::Run { from, to, value } => within(&leg(*from, *to).x, &value.value),
+            FigureKind::Rise { from, to, value } => within(&leg(*from, *to).y, &value.value),
+            FigureKind::Length { from, to, value } => {
+                let (least, most) = ((&value.value - &half).max(whole(0)), &value.value + &half);
+                let found = leg(*from, *to).quadrance();
+                found >= &least * &least && found <= &most * &most
+            }
+            other => panic!("no {} is planted", other.name()),
+        }
+    })
 }

@@ -5,8 +5,8 @@
 
 use super::trial::Problem;
 use super::{CloseState, Effort, close};
-use crate::exact::{Rational, parse_fraction, ratio, whole};
-use crate::measure::{Unit, Written};
+use crate::exact::{Rational, ratio, whole};
+use crate::measure::{Unit, Written, parse_plain};
 use crate::truss::{Figure, FigureKind, Joint, Truss};
 use serde::Deserialize;
 
@@ -49,9 +49,7 @@ fn half_interval(network: &Network) -> Rational {
 }
 
 fn number(text: &str) -> Rational {
-    let (head, tail) = text.split_once('.').unwrap_or((text, ""));
-    let digits = parse_fraction(&format!("{head}{tail}")).expect("digits");
-    digits / whole(10i64.pow(tail.len() as u32))
+    parse_plain(text).expect("a number")
 }
 
 fn float(text: &str) -> f64 {

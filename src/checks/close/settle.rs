@@ -4,7 +4,7 @@ use super::explain;
 use super::freedom::{Freedom, freedom, weak};
 use super::meaning::Axis;
 use super::proposal::name_of;
-use super::suspects::{Blame, blame};
+use super::suspects::{Blame, blame, set_failures};
 use super::trial::{Problem, Trial};
 use super::{Effort, Progress, Stage, answer, misfits, readings, told_here, words};
 use crate::checks::{CloseAnswer, CloseState, Finding, Level, Proof, Rule};
@@ -162,7 +162,7 @@ fn open(
         }
         certificate = problem.exclusion(&[], trial.best.as_ref(), true);
     }
-    let mut findings = set_misfits(truss);
+    let mut findings = set_misfits(problem);
     let blame = match goes_on {
         true => blame(problem, trial, start, watch),
         false => Blame { singles: Vec::new(), pairs: Vec::new(), complete: false },
@@ -210,14 +210,10 @@ fn summary(truss: &Truss, blame: &Blame, is_proved: bool, otherwise: &str) -> St
 }
 
 /// Figures among set joints that do not hold, each as its own finding.
-fn set_misfits(truss: &Truss) -> Vec<Finding> {
+fn set_misfits(problem: &Problem) -> Vec<Finding> {
+    let truss = problem.truss;
     let places = truss.points();
-    let fails = |id: &FigureId| {
-        let figure = truss.figure(*id);
-        super::meaning::is_all_set(truss, &figure.kind)
-            && super::meaning::conditions(truss, figure).iter().any(|condition| condition.fails(&places))
-    };
-    let failing = (0..truss.figures.len()).map(FigureId::new).filter(|id| told_here(truss, *id)).filter(fails);
+    let failing = set_failures(problem).into_iter().filter(|id| told_here(truss, *id));
     failing.map(|id| misfits::misfit(truss, id, &places)).collect()
 }
 

@@ -35,8 +35,7 @@ pub(crate) fn blame(
     let mut blame = Blame { singles: Vec::new(), pairs: Vec::new(), complete: true };
     // A figure that the set joints contradict is in every proof by itself, so no other can be to blame alone.
     let mut candidates = set_failures(problem);
-    let is_set_apart = !candidates.is_empty();
-    if !is_set_apart {
+    if candidates.is_empty() {
         candidates = leaning_figures(problem, &[], trial);
         let others = problem.figures_without_rows();
         candidates.extend(others.into_iter().filter(|id| !candidates.contains(id)).collect::<Vec<_>>());
@@ -75,7 +74,7 @@ pub(crate) fn blame(
 }
 
 /// The figures among set joints that do not hold.
-fn set_failures(problem: &Problem) -> Vec<FigureId> {
+pub(crate) fn set_failures(problem: &Problem) -> Vec<FigureId> {
     let truss = problem.truss;
     let places = truss.points();
     let fails = |id: &FigureId| {

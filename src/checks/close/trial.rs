@@ -29,6 +29,8 @@ pub(crate) struct Problem<'t> {
     /// The bounds of work.
     pub effort: Effort,
     base: Base,
+    /// Of each figure whether it has a row that can be leant on.
+    has_row: Vec<bool>,
 }
 
 /// The unknowns and rows without the exact ties of some figures.
@@ -58,7 +60,11 @@ impl<'t> Problem<'t> {
     pub(crate) fn new(truss: &'t Truss, effort: &Effort) -> Problem<'t> {
         let conditions: Vec<Vec<Condition>> = truss.figures.iter().map(|figure| conditions(truss, figure)).collect();
         let base = Base::new(truss, &conditions, &[]);
-        Problem { truss, sides: sides(truss), step: lattice_step(truss), effort: effort.clone(), base, conditions }
+        let mut has_row = vec![false; conditions.len()];
+        let changing = base.network.rows.iter().filter(|row| !row.is_constant());
+        changing.for_each(|row| has_row[row.figure] = true);
+        let (sides, step, effort) = (sides(truss), lattice_step(truss), effort.clone());
+        Problem { truss, sides, step, effort, base, conditions, has_row }
     }
 
     /// The unknowns and rows for a trial without these figures; built anew when their exact ties have to go.
@@ -73,16 +79,13 @@ impl<'t> Problem<'t> {
     /// True when a figure has a row that can be leant on; exact ties are substituted, and what they leave nothing to change
     /// in has none either.
     pub(crate) fn has_row(&self, id: FigureId) -> bool {
-        self.base.network.rows.iter().any(|row| row.figure == id.index() && !row.is_constant())
+        self.has_row[id.index()]
     }
 
     /// The figures about a loose joint of which nothing can be leant on, so that only leaving them out tells.
     pub(crate) fn figures_without_rows(&self) -> Vec<FigureId> {
         let is_loose = |id: &FigureId| !super::meaning::is_all_set(self.truss, &self.truss.figure(*id).kind);
-        let mut has_row = vec![false; self.conditions.len()];
-        let changing = self.base.network.rows.iter().filter(|row| !row.is_constant());
-        changing.for_each(|row| has_row[row.figure] = true);
-        (0..self.conditions.len()).filter(|&index| !has_row[index]).map(FigureId::new).filter(is_loose).collect()
+        (0..self.conditions.len()).map(FigureId::new).filter(|id| !self.has_row(*id)).filter(is_loose).collect()
     }
 
     fn has_tie(&self, id: FigureId) -> bool {

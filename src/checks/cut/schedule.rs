@@ -61,11 +61,12 @@ pub fn schedule(truss: &Truss, cut: &CutAnswer) -> Schedule {
     };
     order::sort_by(&mut rows, |a, b| alike(a, b).then(a.member.cmp(&b.member)));
     let mut found = Schedule::default();
-    let mut sum = Rational::zero();
+    let (mut length, mut sum) = (Rational::zero(), Rational::zero());
     for (index, row) in rows.iter().enumerate() {
         let is_new = index == 0 || alike(rows[index - 1], row).is_ne();
         if is_new {
             found.groups.push(group(role(row), row));
+            length = printed(&row.quadrance, &truss.step.value);
         }
         let Some(group) = found.groups.last_mut() else { continue };
         group.members.push(row.member);
@@ -73,7 +74,7 @@ pub fn schedule(truss: &Truss, cut: &CutAnswer) -> Schedule {
         if !sense.is_zero() {
             group.hands[usize::from(sense.is_negative())] += 1;
         }
-        sum += printed(&row.quadrance, &truss.step.value);
+        sum += &length;
         let is_last = rows.get(index + 1).is_none_or(|next| role(next) != role(row));
         if is_last {
             let count = found.groups.iter().filter(|g| g.role == role(row)).map(|g| g.members.len()).sum();

@@ -2,7 +2,7 @@
 
 use super::dimensions::{draw_corners, draw_lengths, draw_strings};
 use super::labels::{Anchor, LabelView, Labels};
-use super::misfits::{draw_misfits, times};
+use super::misfits::{Misfits, draw_misfits};
 use super::path::{PathText, PathView, tenths};
 use super::pieces::draw_pieces;
 use crate::checks::{Finding, Level, Question, Rule};
@@ -118,20 +118,23 @@ pub fn drawing_view(state: &State) -> DrawingView {
     draw_marks(&board, &mut labels);
     draw_lengths(&board, &mut labels, &mut paths);
     draw_corners(&board, &mut labels, &mut paths);
-    draw_misfits(&board, &mut labels, &mut paths);
+    let misfits = Misfits::of(&board);
+    if let Some(misfits) = &misfits {
+        draw_misfits(&board, misfits, &mut labels, &mut paths);
+    }
     DrawingView {
         paths: strings.into_iter().chain(paths.into_iter().flatten()).collect(),
         labels: labels.into_views(),
-        caption: caption(&board),
+        caption: caption(state, misfits.map(|misfits| misfits.times)),
         motion: motion(&board),
         sentence: sentence(state),
     }
 }
 
 /// What is shown, and how much larger misfits are drawn.
-fn caption(board: &Board) -> String {
-    let places = places_caption(board.state);
-    match times(board).filter(|times| *times > 1) {
+fn caption(state: &State, times: Option<u32>) -> String {
+    let places = places_caption(state);
+    match times.filter(|times| *times > 1) {
         Some(times) if places.is_empty() => format!("Misfits drawn {times} times as large"),
         Some(times) => format!("{places}, misfits {times} times as large"),
         None => places,
@@ -143,9 +146,8 @@ fn places_caption(state: &State) -> String {
         return String::new();
     }
     match state.shown {
-        Shown::Sketch => "Showing your sketch".into(),
-        Shown::Layout if !state.has_layout() => "Showing your sketch".into(),
-        Shown::Layout => layout_caption(state),
+        Shown::Layout if state.has_layout() => layout_caption(state),
+        Shown::Sketch | Shown::Layout => "Showing your sketch".into(),
         Shown::Nearest => "Showing the nearest places".into(),
         Shown::Without(index) => {
             let suspect = state.fresh().and_then(|checked| checked.report.answers.close.blamed().get(index));

@@ -53,19 +53,29 @@ fn shown_figures(state: &State) -> Vec<FigureId> {
     }
 }
 
-/// How many times as large misfits are drawn; `None` when none is.
-pub(super) fn times(board: &Board) -> Option<u32> {
-    let longest = misfits(board).iter().map(|m| f64::hypot(m.off[0], m.off[1])).fold(0.0, f64::max);
-    (longest > 0.0).then(|| TIMES.into_iter().find(|times| longest * f64::from(*times) <= LONGEST).unwrap_or(1))
+/// The misfits of a drawing, and how many times as large they are drawn.
+pub(super) struct Misfits {
+    found: Vec<Misfit>,
+    /// The same for all of them.
+    pub(super) times: u32,
+}
+
+impl Misfits {
+    /// Those that the board shows; `None` when there is none.
+    pub(super) fn of(board: &Board) -> Option<Misfits> {
+        let found: Vec<Misfit> = shown_figures(board.state).into_iter().filter_map(|id| misfit(board, id)).collect();
+        let longest = found.iter().map(|m| f64::hypot(m.off[0], m.off[1])).fold(0.0, f64::max);
+        let times = TIMES.into_iter().find(|times| longest * f64::from(*times) <= LONGEST).unwrap_or(1);
+        (longest > 0.0).then_some(Misfits { found, times })
+    }
 }
 
 /// Draws the misfits, each with its joint's place by the figure, and names them where they are few.
-pub(super) fn draw_misfits(board: &Board, labels: &mut Labels, paths: &mut Vec<Option<PathView>>) {
-    let Some(times) = times(board) else { return };
-    let found = misfits(board);
+pub(super) fn draw_misfits(board: &Board, misfits: &Misfits, labels: &mut Labels, paths: &mut Vec<Option<PathView>>) {
+    let Misfits { found, times } = misfits;
     let (mut lines, mut ends) = (PathText::default(), PathText::default());
-    for Misfit { id, at, off } in &found {
-        let way = off.map(|part| part * f64::from(times));
+    for Misfit { id, at, off } in found {
+        let way = off.map(|part| part * f64::from(*times));
         let length = f64::hypot(way[0], way[1]);
         let tip = Pixel::new(at.x + way[0], at.y + way[1]);
         let across = Pixel::new(-way[1] / length * 6.0, way[0] / length * 6.0);
@@ -108,10 +118,6 @@ fn words(state: &State, id: FigureId) -> String {
         Some(reading) => format!("{mark} off {}", pretty(&reading.misfit)),
         None => format!("{mark} is off"),
     }
-}
-
-fn misfits(board: &Board) -> Vec<Misfit> {
-    shown_figures(board.state).into_iter().filter_map(|id| misfit(board, id)).collect()
 }
 
 /// The misfit of one figure; `None` for one that has no value, or none that can be drawn.
