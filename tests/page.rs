@@ -475,4 +475,6 @@ fn pieces_are_cut_from_the_stock_that_is_typed_and_drawn_on_the_board() {
     assert!(refused.error.contains("expected a role and its depth"), "{}", refused.error);
     let table = chordwright::page::state::csv_text(&page.state, Book::Pieces);
     assert_eq!(table.lines().count(), page.state.truss.members.len() + 2, "a row for each, the titles and the notice");
+    page.cell(Row::Sheet, Column::Unit, "mm");
+    assert_eq!(post(&page)[1], "90", "inches that were typed are not taken for millimetres");
 }

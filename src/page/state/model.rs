@@ -9,6 +9,7 @@ use super::plan::Plan;
 use crate::checks::pieces::Shop;
 use crate::checks::{Limits, Places, Progress, Question};
 use crate::exact::Point;
+use crate::measure::Unit;
 use crate::truss::{FigureId, JointId, MemberId, Selection, SupportId, Truss};
 use std::rc::Rc;
 
@@ -27,8 +28,8 @@ pub struct State {
     pub progress: Option<Progress>,
     /// The limits that the checks go by.
     pub limits: Rc<Limits>,
-    /// What pieces are cut from; `None` is what is usual for the unit.
-    pub shop: Option<Rc<Shop>>,
+    /// What pieces are cut from, in the unit it was typed for; `None`, and on a sheet of another unit, what is usual there.
+    pub shop: Option<(Unit, Rc<Shop>)>,
     /// Where the truss came from; `None` on the first screen.
     pub source: Option<Source>,
     /// The question whose evidence is shown.
@@ -270,7 +271,10 @@ pub struct Refused {
 impl State {
     /// What pieces are cut from.
     pub fn shop(&self) -> Shop {
-        self.shop.as_ref().map_or_else(|| Shop::usual(self.truss.unit), |shop| (**shop).clone())
+        match &self.shop {
+            Some((unit, shop)) if *unit == self.truss.unit => (**shop).clone(),
+            _ => Shop::usual(self.truss.unit),
+        }
     }
 
     /// The answers, when they are about the truss as it is now.

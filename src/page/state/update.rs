@@ -319,7 +319,7 @@ fn enter_limit(state: &mut State, limit: Adjustable, text: &str, effects: &mut V
 fn enter_stock(state: &mut State, text: &str) -> Result<(), String> {
     let shop = super::stock::read_stock(&state.shop(), &state.truss, text)?;
     state.checked = state.checked.as_ref().map(|checked| Rc::new(checked.with_shop(shop.clone())));
-    state.shop = Some(Rc::new(shop));
+    state.shop = Some((state.truss.unit, Rc::new(shop)));
     Ok(())
 }
 
